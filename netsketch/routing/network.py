@@ -1,0 +1,254 @@
+"""A plan and a trial compiled to arrays.
+
+:class:`Structure` holds what only drawing changes (vertices, links, the arcs of both in
+CSR order); :class:`Network` adds what a trial changes (costs, states). Networks over the
+same structure can be compared arc by arc, and next-hop sets bit by bit.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass, field, replace
+from functools import cached_property
+
+import numpy as np
+import numpy.typing as npt
+
+from netsketch.model import (
+    Add,
+    Change,
+    ChangeSettings,
+    ChangeTrial,
+    Drained,
+    Link,
+    LinkCost,
+    LinkState,
+    Plan,
+    Remove,
+    Router,
+    Segment,
+    Step,
+    Trial,
+)
+
+Ints = npt.NDArray[np.int32]
+Bools = npt.NDArray[np.bool_]
+Floats = npt.NDArray[np.float64]
+Distances = npt.NDArray[np.integer]
+
+BLOCKED = np.int32(2**31 - 1)
+"""Weight of an arc that carries nothing."""
+
+
+@dataclass(frozen=True, eq=False)
+class Structure:
+    """Vertices, links and arcs. Routers are vertices ``0 … routers - 1``, segments follow.
+
+    Link ``k`` has two arcs: ``arcs[k, 0]`` from its source, ``arcs[k, 1]`` from its target.
+    Arcs are sorted by tail, then head, so ``indptr[v] : indptr[v + 1]`` leave vertex ``v``
+    and parallel arcs stand side by side; ``in_arc[in_ptr[v] : in_ptr[v + 1]]`` enter it.
+    ``first_parallel[a]`` is the first arc with the tail and head of ``a``.
+    """
+
+    vertex_ids: tuple[str, ...]
+    routers: int
+    link_ids: tuple[str, ...]
+    indptr: Ints
+    tail: Ints
+    head: Ints
+    link: Ints
+    arcs: Ints
+    in_ptr: Ints
+    in_arc: Ints
+    first_parallel: Ints
+
+    @classmethod
+    def build(
+        cls,
+        router_ids: Sequence[str],
+        segment_ids: Sequence[str],
+        link_ids: Sequence[str],
+        ends: npt.ArrayLike,
+    ) -> Structure:
+        """Return the structure of links ``link_ids`` with ``ends`` (L, 2) vertex indexes."""
+        vertices, links = len(router_ids) + len(segment_ids), len(link_ids)
+        pairs = np.asarray(ends, np.int32).reshape(links, 2)
+        tail = np.concatenate([pairs[:, 0], pairs[:, 1]])
+        head = np.concatenate([pairs[:, 1], pairs[:, 0]])
+        link = np.tile(np.arange(links, dtype=np.int32), 2)
+        order = np.lexsort((link, head, tail))
+        position = np.empty(2 * links, np.int32)
+        position[order] = np.arange(2 * links, dtype=np.int32)
+        return cls._from_sorted(
+            tuple(router_ids) + tuple(segment_ids),
+            len(router_ids),
+            tuple(link_ids),
+            tail[order],
+            head[order],
+            link[order],
+            np.stack([position[:links], position[links:]], axis=1),
+            vertices,
+        )
+
+    @classmethod
+    def _from_sorted(
+        cls,
+        vertex_ids: tuple[str, ...],
+        routers: int,
+        link_ids: tuple[str, ...],
+        tail: Ints,
+        head: Ints,
+        link: Ints,
+        arcs: Ints,
+        vertices: int,
+    ) -> Structure:
+        indptr = np.searchsorted(tail, np.arange(vertices + 1)).astype(np.int32)
+        in_arc = np.argsort(head, kind="stable").astype(np.int32)
+        in_ptr = np.searchsorted(head[in_arc], np.arange(vertices + 1)).astype(np.int32)
+        starts = np.ones(len(tail), np.bool_)
+        starts[1:] = (tail[1:] != tail[:-1]) | (head[1:] != head[:-1])
+        first = np.maximum.accumulate(np.where(starts, np.arange(len(tail)), 0))
+        return cls(
+            vertex_ids, routers, link_ids, indptr, tail, head, link, arcs, in_ptr, in_arc,
+            first.astype(np.int32),
+        )  # fmt: skip
+
+    @cached_property
+    def vertex_of(self) -> dict[str, int]:
+        """Vertex id -> index."""
+        return {key: index for index, key in enumerate(self.vertex_ids)}
+
+    @cached_property
+    def link_of(self) -> dict[str, int]:
+        """Link id -> index."""
+        return {key: index for index, key in enumerate(self.link_ids)}
+
+    @property
+    def vertices(self) -> int:
+        return len(self.vertex_ids)
+
+    def ends(self) -> Ints:
+        """Return (L, 2): the vertices at the source and the target of each link."""
+        return np.stack([self.tail[self.arcs[:, 0]], self.head[self.arcs[:, 0]]], axis=1)
+
+
+@dataclass(frozen=True, eq=False)
+class Network:
+    """A structure with the state of every part.
+
+    ``cost[a]`` is what leaving ``tail[a]`` costs; ``delay`` and ``capacity`` are per link,
+    NaN where not known. ``weight`` and ``transit`` are what the kernels read.
+    """
+
+    structure: Structure
+    cost: Ints
+    link_up: Bools
+    vertex_up: Bools
+    drained: Bools
+    delay: Floats
+    capacity: Floats
+    weight: Ints = field(init=False)
+    transit: Ints = field(init=False)
+
+    def __post_init__(self) -> None:
+        """Derive ``weight`` (:data:`BLOCKED` unless the link and both its ends are up) and
+        ``transit`` (also blocked where the tail is drained: for every source but it)."""
+        s = self.structure
+        usable = self.link_up[s.link] & self.vertex_up[s.tail] & self.vertex_up[s.head]
+        weight = np.where(usable, self.cost, BLOCKED)
+        transit = weight
+        if self.drained.any():
+            transit = np.where(self.drained[s.tail], BLOCKED, weight)
+        object.__setattr__(self, "weight", weight)
+        object.__setattr__(self, "transit", transit)
+
+    @property
+    def distance_type(self) -> type[np.int32] | type[np.int64]:
+        """int32 where no path can be too long for it, else int64: always exact."""
+        highest = int(self.cost.max(initial=0))
+        bound = highest * max(self.structure.vertices, 1)
+        return np.int32 if bound < int(BLOCKED) else np.int64
+
+    def laid_over(self, trial: Trial) -> Network:
+        """Return this network with ``trial`` over it. O(arcs), no Python loop over them."""
+        if not trial:
+            return self
+        s = self.structure
+        cost, link_up = self.cost.copy(), self.link_up.copy()
+        vertex_up, drained = self.vertex_up.copy(), self.drained.copy()
+        for change in trial:
+            if isinstance(change, LinkState):
+                link_up[s.link_of[change.link]] = change.up
+            elif isinstance(change, LinkCost):
+                cost[s.arcs[s.link_of[change.link]]] = change.cost, change.cost_back
+            elif isinstance(change, Drained):
+                drained[s.vertex_of[change.node]] = change.drained
+            else:
+                vertex_up[s.vertex_of[change.node]] = change.up
+        return replace(self, cost=cost, link_up=link_up, vertex_up=vertex_up, drained=drained)
+
+    def after(self, plan: Plan, steps: Iterable[Step]) -> Network:
+        """Return the network of ``plan`` once ``steps`` have been applied to it.
+
+        Equal to ``compile_plan(plan)``; shares the structure unless something that
+        carries traffic was added or removed.
+        """
+        items = []
+        for step in steps:
+            if isinstance(step, Add | Remove):
+                if isinstance(step.item, Router | Segment | Link):
+                    return compile_plan(plan)
+            elif isinstance(step, Change):
+                items.append(step.new)
+            else:
+                assert isinstance(step, ChangeSettings | ChangeTrial)
+        return self._changed(items) if items else self
+
+    def _changed(self, items: Iterable[object]) -> Network:
+        s = self.structure
+        cost, link_up = self.cost.copy(), self.link_up.copy()
+        vertex_up, drained = self.vertex_up.copy(), self.drained.copy()
+        delay, capacity = self.delay.copy(), self.capacity.copy()
+        for item in items:
+            if isinstance(item, Link):
+                k = s.link_of[item.id]
+                cost[s.arcs[k]] = item.cost, item.cost_back
+                link_up[k] = item.up
+                delay[k], capacity[k] = _known(item.delay_ms), _known(item.capacity_mbps)
+            elif isinstance(item, Router | Segment):
+                v = s.vertex_of[item.id]
+                vertex_up[v] = item.up
+                drained[v] = isinstance(item, Router) and item.drained
+        return Network(s, cost, link_up, vertex_up, drained, delay, capacity)
+
+
+def _known(value: float | None) -> float:
+    return np.nan if value is None else float(value)
+
+
+def compile_plan(plan: Plan, trial: Trial | None = None) -> Network:
+    """Return the arrays of ``plan`` with ``trial`` laid over it (default: without any).
+    O(items)."""
+    routers, segments = plan.routers(), plan.segments()
+    nodes = [*routers, *segments]
+    vertex_of = {node.id: index for index, node in enumerate(nodes)}
+    links = list(plan.links)
+    structure = Structure.build(
+        [node.id for node in routers],
+        [node.id for node in segments],
+        [link.id for link in links],
+        [(vertex_of[link.source], vertex_of[link.target]) for link in links],
+    )
+    cost = np.zeros(2 * len(links), np.int32)
+    cost[structure.arcs[:, 0]] = [link.cost for link in links]
+    cost[structure.arcs[:, 1]] = [link.cost_back for link in links]
+    network = Network(
+        structure,
+        cost,
+        np.array([link.up for link in links], np.bool_),
+        np.array([node.up for node in nodes], np.bool_),
+        np.array([isinstance(node, Router) and node.drained for node in nodes], np.bool_),
+        np.array([_known(link.delay_ms) for link in links], np.float64),
+        np.array([_known(link.capacity_mbps) for link in links], np.float64),
+    )
+    return network.laid_over(trial) if trial else network
