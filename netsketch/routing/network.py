@@ -18,7 +18,6 @@ from netsketch.model import (
     Add,
     Change,
     ChangeSettings,
-    ChangeTrial,
     Drained,
     Link,
     LinkCost,
@@ -29,6 +28,7 @@ from netsketch.model import (
     Segment,
     Step,
     Trial,
+    highest_cost,
 )
 
 Ints = npt.NDArray[np.int32]
@@ -137,7 +137,8 @@ class Network:
     """A structure with the state of every part.
 
     ``cost[a]`` is what leaving ``tail[a]`` costs; ``delay`` and ``capacity`` are per link,
-    NaN where not known. ``weight`` and ``transit`` are what the kernels read.
+    NaN where not known. ``highest`` is the largest cost any link may get (the cost
+    style's). ``weight`` and ``transit`` are what the kernels read.
     """
 
     structure: Structure
@@ -147,6 +148,7 @@ class Network:
     drained: Bools
     delay: Floats
     capacity: Floats
+    highest: int
     weight: Ints = field(init=False)
     transit: Ints = field(init=False)
 
@@ -164,9 +166,9 @@ class Network:
 
     @property
     def distance_type(self) -> type[np.int32] | type[np.int64]:
-        """int32 where no path can be too long for it, else int64: always exact."""
-        highest = int(self.cost.max(initial=0))
-        bound = highest * max(self.structure.vertices, 1)
+        """int32 where no path can be too long for it, else int64: always exact, and the
+        same for every trial."""
+        bound = self.highest * max(self.structure.vertices, 1)
         return np.int32 if bound < int(BLOCKED) else np.int64
 
     def laid_over(self, trial: Trial) -> Network:
@@ -200,8 +202,8 @@ class Network:
                     return compile_plan(plan)
             elif isinstance(step, Change):
                 items.append(step.new)
-            else:
-                assert isinstance(step, ChangeSettings | ChangeTrial)
+            elif isinstance(step, ChangeSettings) and step.old.cost_style != step.new.cost_style:
+                return compile_plan(plan)
         return self._changed(items) if items else self
 
     def _changed(self, items: Iterable[object]) -> Network:
@@ -219,7 +221,7 @@ class Network:
                 v = s.vertex_of[item.id]
                 vertex_up[v] = item.up
                 drained[v] = isinstance(item, Router) and item.drained
-        return Network(s, cost, link_up, vertex_up, drained, delay, capacity)
+        return Network(s, cost, link_up, vertex_up, drained, delay, capacity, self.highest)
 
 
 def _known(value: float | None) -> float:
@@ -250,5 +252,6 @@ def compile_plan(plan: Plan, trial: Trial | None = None) -> Network:
         np.array([isinstance(node, Router) and node.drained for node in nodes], np.bool_),
         np.array([_known(link.delay_ms) for link in links], np.float64),
         np.array([_known(link.capacity_mbps) for link in links], np.float64),
+        highest_cost(plan.settings.cost_style),
     )
     return network.laid_over(trial) if trial else network

@@ -1,0 +1,226 @@
+"""The routes of one router: costs, next hops, hops, delays and paths, all derived from
+its distance row."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+from typing import NamedTuple
+
+import numpy as np
+import numpy.typing as npt
+
+from netsketch.routing import derive
+from netsketch.routing.allpairs import distances_from, unreached
+from netsketch.routing.network import Distances, Ints, Network
+
+Words = npt.NDArray[np.uint64]
+
+
+class NextHop(NamedTuple):
+    """Where a router sends traffic: over ``link`` to ``router``; ``None`` when the
+    destination is the segment at the end of the link itself."""
+
+    link: str
+    router: str | None
+
+
+class ShareOfLink(NamedTuple):
+    """The part of a pair's traffic that a link carries from ``tail`` to ``head``."""
+
+    link: str
+    tail: str
+    head: str
+    share: float
+
+
+@dataclass(frozen=True)
+class _AlongPaths:
+    hops: Ints
+    least: npt.NDArray[np.float64]
+    most: npt.NDArray[np.float64]
+    paths: npt.NDArray[np.int64]
+
+
+class Routes:
+    """What router ``source`` (a vertex index) has in its forwarding table.
+
+    ``row`` is its distance to every vertex; given, it is trusted (a row of
+    :class:`~netsketch.routing.allpairs.AllPairs`), else computed.
+    """
+
+    def __init__(self, network: Network, source: int, row: Distances | None = None) -> None:
+        self.network = network
+        self.source = source
+        self.row = distances_from(network, source) if row is None else row
+        self.unreached = unreached(self.row.dtype.type)
+        self._sets: dict[bytes, tuple[NextHop, ...]] = {}
+
+    @cached_property
+    def order(self) -> Ints:
+        """The reached vertices, the source first, every tight arc going forward."""
+        s = self.network.structure
+        order = np.empty(s.vertices, np.int32)
+        reached = derive.tight_order(
+            s.indptr, s.head, self.network.weight, self.network.transit, self.source, self.row,
+            self.unreached, np.zeros(s.vertices, np.int32), order,
+        )  # fmt: skip
+        return order[:reached]
+
+    @cached_property
+    def _starts(self) -> npt.NDArray[np.int64]:
+        s = self.network.structure
+        starts: npt.NDArray[np.int64] = derive.block_starts(
+            s.indptr, s.head, s.routers, self.source
+        )
+        return starts
+
+    @cached_property
+    def masks(self) -> Words:
+        """The set of next hops to each vertex (V, W): bit sets, laid out as
+        :mod:`netsketch.routing.derive` says."""
+        s, words = self.network.structure, max(1, int(self._starts[-1] + 63) >> 6)
+        masks = np.empty((s.vertices, words), np.uint64)
+        derive.next_hop_masks(
+            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight,
+            self.network.transit, self.source, self.row, self.unreached, self.order,
+            len(self.order), self._starts, masks, np.empty(words, np.uint64),
+        )  # fmt: skip
+        return masks
+
+    @cached_property
+    def arc_masks(self) -> Words:
+        """The next hops whose traffic each arc carries (A, W); all 0 off the source tree."""
+        s = self.network.structure
+        out = np.empty((len(s.head), self.masks.shape[1]), np.uint64)
+        derive.arc_masks(
+            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight,
+            self.network.transit, self.source, self.row, self.unreached, self._starts,
+            self.masks, out,
+        )  # fmt: skip
+        return out
+
+    @cached_property
+    def tight(self) -> npt.NDArray[np.bool_]:
+        """Which arcs (A,) lie on a shortest path: the source tree."""
+        s, row = self.network.structure, self.row.astype(np.int64)
+        weight = np.where(s.tail == self.source, self.network.weight, self.network.transit)
+        usable = (weight != derive.BLOCKED) & (self.row[s.tail] != self.unreached)
+        return usable & (row[s.tail] + weight == row[s.head])
+
+    @cached_property
+    def _along(self) -> _AlongPaths:
+        s, n = self.network.structure, self.network.structure.vertices
+        found = _AlongPaths(
+            np.empty(n, np.int32), np.empty(n), np.empty(n), np.empty(n, np.int64)
+        )
+        derive.along_paths(
+            s.indptr, s.head, s.link, s.routers, self.network.weight, self.network.transit,
+            self.network.delay, self.source, self.row, self.unreached, self.order,
+            len(self.order), found.hops, found.least, found.most, found.paths,
+        )  # fmt: skip
+        return found
+
+    def cost(self, vertex: int) -> int | None:
+        """Return the cost of the way to ``vertex``; ``None`` when it is cut off."""
+        distance = int(self.row[vertex])
+        return None if distance == self.unreached else distance
+
+    def hops(self, vertex: int) -> int | None:
+        """Return the least number of hops over the equal-cost paths; a segment crossed is
+        one hop. ``None`` when ``vertex`` is cut off."""
+        hops = int(self._along.hops[vertex])
+        return None if hops < 0 else hops
+
+    def delay_ms(self, vertex: int) -> tuple[float, float] | None:
+        """Return the least and most delay over the equal-cost paths, in ms; ``None`` when
+        ``vertex`` is cut off or the delay of a link on the way is not known."""
+        least, most = float(self._along.least[vertex]), float(self._along.most[vertex])
+        return None if np.isnan(least) else (least, most)
+
+    def path_count(self, vertex: int) -> int:
+        """Return the number of equal-cost paths, parallel links told apart;
+        :data:`~netsketch.routing.derive.MANY` stands for that many or more."""
+        return int(self._along.paths[vertex])
+
+    def next_hops(self, vertex: int) -> tuple[NextHop, ...]:
+        """Return every equal-cost next hop to ``vertex``, none for the source itself."""
+        return self.decode(self.masks[vertex])
+
+    def decode(self, mask: Words) -> tuple[NextHop, ...]:
+        """Return the next hops whose bits are set in ``mask`` (W,), in bit order."""
+        key = mask.tobytes()
+        if key not in self._sets:
+            bits = np.flatnonzero(np.unpackbits(mask.view(np.uint8), bitorder="little"))
+            self._sets[key] = tuple(self.next_hop_at(int(bit)) for bit in bits)
+        return self._sets[key]
+
+    def next_hop_at(self, bit: int) -> NextHop:
+        """Return the next hop that ``bit`` stands for."""
+        s = self.network.structure
+        place = int(np.searchsorted(self._starts, bit, side="right")) - 1
+        arc = int(s.indptr[self.source]) + place
+        link, head = s.link_ids[s.link[arc]], int(s.head[arc])
+        beyond = bit - int(self._starts[place])
+        if beyond:
+            return NextHop(link, s.vertex_ids[s.head[s.indptr[head] + beyond - 1]])
+        return NextHop(link, s.vertex_ids[head] if head < s.routers else None)
+
+    def shares(self, target: int) -> list[ShareOfLink]:
+        """Return the links traffic to ``target`` uses and the part of it on each, in
+        order of travel.
+
+        Each router splits equally over its next hops (RFC 2991, 2992 practice); a segment
+        passes on what came for each router beyond it.
+        """
+        s = self.network.structure
+        arcs, onward = self._arcs_towards(target)
+        flow: dict[int, float] = {self.source: 1.0}
+        found = []
+        for u in (int(v) for v in self.order if int(v) in onward):
+            out = onward[u]
+            parts = [self._part(arc, out, onward, target) for arc in out]
+            total = sum(parts)
+            for arc, part in zip(out, parts, strict=True):
+                share = flow.get(u, 0.0) * part / total
+                v = int(s.head[arc])
+                flow[v] = flow.get(v, 0.0) + share
+                link = s.link_ids[s.link[arc]]
+                found.append(ShareOfLink(link, s.vertex_ids[u], s.vertex_ids[v], share))
+        return found
+
+    def _arcs_towards(self, target: int) -> tuple[list[int], dict[int, list[int]]]:
+        """Return the tight arcs on a path to ``target``, also by tail."""
+        s = self.network.structure
+        arcs: list[int] = []
+        onward: dict[int, list[int]] = {}
+        if self.cost(target) is None:
+            return arcs, onward
+        ahead, seen = [target], {target}
+        while ahead:
+            v = ahead.pop()
+            for arc in s.in_arc[s.in_ptr[v] : s.in_ptr[v + 1]]:
+                if not self.tight[arc]:
+                    continue
+                u = int(s.tail[arc])
+                arcs.append(int(arc))
+                onward.setdefault(u, []).append(int(arc))
+                if u not in seen:
+                    seen.add(u)
+                    ahead.append(u)
+        for out in onward.values():
+            out.sort()
+        return arcs, onward
+
+    def _part(
+        self, arc: int, beside: list[int], onward: dict[int, list[int]], target: int
+    ) -> float:
+        """Return how many next hops an arc stands for: out of a router one for each router
+        beyond a segment; out of a segment one for each router, parallel arcs sharing it."""
+        s = self.network.structure
+        tail, head = int(s.tail[arc]), int(s.head[arc])
+        if tail >= s.routers:
+            return 1.0 / sum(int(s.head[other]) == head for other in beside)
+        if head < s.routers or head == target:
+            return 1.0
+        return float(len({int(s.head[a]) for a in onward[head]}))
