@@ -9,8 +9,7 @@ from functools import lru_cache
 import numpy as np
 import numpy.typing as npt
 
-from netsketch.routing import AllPairs, Cancelled, Network, NextHop, Routes, never
-from netsketch.routing import derive
+from netsketch.routing import AllPairs, Cancelled, Network, NextHop, Routes, derive, never
 from netsketch.routing.allpairs import over_sources
 
 OUTCOMES = {derive.MOVED: "moved", derive.CUT_OFF: "cut off", derive.RESTORED: "restored"}
@@ -44,9 +43,7 @@ class Ledger:
         sources, targets = np.nonzero(outcomes != derive.UNCHANGED)
         self.sources, self.targets = sources.astype(np.int32), targets.astype(np.int32)
         self.outcomes = outcomes[sources, targets]
-        self.before, self.after = (
-            _costs(pairs, sources, targets) for pairs in (before, after)
-        )
+        self.before, self.after = (_costs(pairs, sources, targets) for pairs in (before, after))
         self.moved = int((self.outcomes == derive.MOVED).sum())
         self.cut_off = int((self.outcomes == derive.CUT_OFF).sum())
         self.restored = int((self.outcomes == derive.RESTORED).sum())

@@ -28,9 +28,7 @@ def check_cost(cost: object, link_id: str, style: str) -> None:
         )
     if not low <= cost <= high:
         text = str(cost) if abs(cost) < 10**20 else "with over 20 digits"
-        raise PlanError(
-            f"link {quoted(link_id)}: cost {text} is outside {low} to {high} ({style})"
-        )
+        raise PlanError(f"link {quoted(link_id)}: cost {text} is outside {low} to {high} ({style})")
 
 
 def check_number(
@@ -40,7 +38,7 @@ def check_number(
     negative; ``above_zero``: must be greater than 0)."""
     if isinstance(value, bool) or not isinstance(value, int | float):
         raise PlanError(f"{what} is not a number: {quoted(str(value))}")
-    if isinstance(value, int) and abs(value) > 10**15 or not math.isfinite(value):
+    if (isinstance(value, int) and abs(value) > 10**15) or not math.isfinite(value):
         raise PlanError(f"{what} is not a number that can be used")
     if abs(value) > 1e15:
         raise PlanError(f"{what} is too large: {value:g}")

@@ -140,13 +140,17 @@ def rename(plan: Plan, node: str, name: str) -> Edit:
 def set_costs(plan: Plan, link: str, cost: int, cost_back: int) -> Edit:
     """Return the edit that gives a link these costs in the plan."""
     return change(
-        plan, [replace(plan.links[link], cost=cost, cost_back=cost_back)], f"set cost of link {link}"
+        plan,
+        [replace(plan.links[link], cost=cost, cost_back=cost_back)],
+        f"set cost of link {link}",
     )
 
 
 def set_settings(plan: Plan, **fields: Any) -> Edit:
     """Return the edit that changes the plan's settings."""
-    return Edit("change plan settings", (ChangeSettings(plan.settings, replace(plan.settings, **fields)),))
+    return Edit(
+        "change plan settings", (ChangeSettings(plan.settings, replace(plan.settings, **fields)),)
+    )
 
 
 def set_demands(plan: Plan, demands: Iterable[Demand]) -> Edit:
@@ -216,9 +220,7 @@ def toggle_down(plan: Plan, nodes: Iterable[str] = (), links: Iterable[str] = ()
     """Return the edit that takes these down in the trial; when all are down already,
     the edit that brings them up."""
     nodes, links = list(nodes), list(links)
-    up = not any(
-        [is_up(plan, node=n) for n in nodes] + [is_up(plan, link=key) for key in links]
-    )
+    up = not any([is_up(plan, node=n) for n in nodes] + [is_up(plan, link=key) for key in links])
     changes: list[TrialChange] = [NodeState(key, up) for key in nodes]
     changes.extend(LinkState(key, up) for key in links)
     what = _described(plan, nodes, links)
@@ -282,9 +284,7 @@ def trial_items(plan: Plan, trial: Trial) -> list[Item]:
             place = ("node", wanted.node)
             node = changed.get(place, plan.nodes[wanted.node])
             values = (
-                {"up": wanted.up}
-                if isinstance(wanted, NodeState)
-                else {"drained": wanted.drained}
+                {"up": wanted.up} if isinstance(wanted, NodeState) else {"drained": wanted.drained}
             )
             changed[place] = replace(node, **values)
     return list(changed.values())

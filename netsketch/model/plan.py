@@ -15,8 +15,16 @@ from netsketch.model.checks import (
     check_settings,
     quoted,
 )
-from netsketch.model.edit import Add, Change, ChangeSettings, ChangeTrial, Edit, Remove, Step
-from netsketch.model.edit import inverse_step
+from netsketch.model.edit import (
+    Add,
+    Change,
+    ChangeSettings,
+    ChangeTrial,
+    Edit,
+    Remove,
+    Step,
+    inverse_step,
+)
 from netsketch.model.items import (
     Demand,
     Item,
@@ -154,7 +162,8 @@ class Plan:
         """Return the first of ``prefix1``, ``prefix2``, … that names nothing yet, neither
         in the plan nor in ``taken``."""
         number = len(self.links if prefix == "l" else self.nodes) + 1
-        shelf: Shelf[Any] = {"l": self.links, "g": self.groups}.get(prefix, self.nodes)
+        shelves: dict[str, Shelf[Any]] = {"l": self.links, "g": self.groups}
+        shelf = shelves.get(prefix, self.nodes)
         while f"{prefix}{number}" in shelf or (taken and f"{prefix}{number}" in taken):
             number += 1
         return f"{prefix}{number}"

@@ -59,7 +59,7 @@ class Trial(msgspec.Struct, frozen=True):
     def __bool__(self) -> bool:
         return bool(self.changes)
 
-    def __iter__(self) -> Iterator[TrialChange]:  # type: ignore[override]
+    def __iter__(self) -> Iterator[TrialChange]:
         return iter(self.changes)
 
     def find(self, change_type: type, key: str) -> TrialChange | None:
@@ -85,8 +85,6 @@ class Trial(msgspec.Struct, frozen=True):
             tuple(
                 c
                 for c in self.changes
-                if not (
-                    c.link in links if isinstance(c, LinkState | LinkCost) else c.node in nodes
-                )
+                if not (c.link in links if isinstance(c, LinkState | LinkCost) else c.node in nodes)
             )
         )

@@ -15,7 +15,7 @@ from netsketch.routing.network import BLOCKED, Distances, Ints, Network, Structu
 THREADS = max(1, min(8, os.cpu_count() or 1))
 
 
-class Cancelled(Exception):
+class Cancelled(Exception):  # noqa: N818 - an outcome, not an error
     """The caller asked to stop; nothing half-done is kept."""
 
 

@@ -15,7 +15,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from netsketch.routing.kernels import BLOCKED, Array, compiled
+from netsketch.routing.kernels import Array, compiled
+from netsketch.routing.network import BLOCKED
 
 MANY = 2**62
 """Path counts at or above this are not exact."""
@@ -40,7 +41,7 @@ def is_tight(
 ) -> bool:  # fmt: skip
     """Tell whether arc ``a`` out of ``u`` lies on a shortest path from ``source``."""
     w = weight[a] if u == source else transit[a]
-    return w != BLOCKED and row[u] != unreached and row[u] + np.int64(w) == row[head[a]]
+    return bool(w != BLOCKED and row[u] != unreached and row[u] + np.int64(w) == row[head[a]])
 
 
 @compiled
@@ -286,9 +287,9 @@ def compare_rows(
         for i in range(len(changed)):
             a = changed[i]
             u = tail[a]
-            if is_tight(a, u, head, weight_old, transit_old, source, old, unreached_old) or is_tight(
-                a, u, head, weight, transit, source, new, unreached
-            ):
+            if is_tight(
+                a, u, head, weight_old, transit_old, source, old, unreached_old
+            ) or is_tight(a, u, head, weight, transit, source, new, unreached):
                 hit = True
                 break
         if not hit:
@@ -305,9 +306,7 @@ def compare_rows(
             indptr, head, first_parallel, routers, weight_old, transit_old, source, old,
             unreached_old, order, reached, starts, masks_old, spare,
         )  # fmt: skip
-        reached = tight_order(
-            indptr, head, weight, transit, source, new, unreached, waiting, order
-        )
+        reached = tight_order(indptr, head, weight, transit, source, new, unreached, waiting, order)
         next_hop_masks(
             indptr, head, first_parallel, routers, weight, transit, source, new, unreached,
             order, reached, starts, masks, spare,

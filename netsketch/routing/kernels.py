@@ -15,7 +15,8 @@ from typing import Any
 import numpy as np
 from numba import njit
 
-BLOCKED = 2**31 - 1
+from netsketch.routing.network import BLOCKED
+
 VERTEX_BITS = 21
 VERTEX_MASK = (1 << VERTEX_BITS) - 1
 
@@ -348,9 +349,7 @@ def update_rows(
             else:
                 was, now = transit_old[a], transit[a]
             d = row[head[a]]
-            if (now > was and row[u] + was == d) or (
-                now < was and row[u] + np.int64(now) < d
-            ):
+            if (now > was and row[u] + was == d) or (now < was and row[u] + np.int64(now) < d):
                 hit = True
                 break
         if hit:

@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field, replace
 from functools import cached_property
+from typing import Final
 
 import numpy as np
 import numpy.typing as npt
@@ -19,6 +20,7 @@ from netsketch.model import (
     Change,
     ChangeSettings,
     Drained,
+    Item,
     Link,
     LinkCost,
     LinkState,
@@ -36,7 +38,7 @@ Bools = npt.NDArray[np.bool_]
 Floats = npt.NDArray[np.float64]
 Distances = npt.NDArray[np.integer]
 
-BLOCKED = np.int32(2**31 - 1)
+BLOCKED: Final = 2**31 - 1
 """Weight of an arc that carries nothing."""
 
 
@@ -169,7 +171,7 @@ class Network:
         """int32 where no path can be too long for it, else int64: always exact, and the
         same for every trial."""
         bound = self.highest * max(self.structure.vertices, 1)
-        return np.int32 if bound < int(BLOCKED) else np.int64
+        return np.int32 if bound < BLOCKED else np.int64
 
     def laid_over(self, trial: Trial) -> Network:
         """Return this network with ``trial`` over it. O(arcs), no Python loop over them."""
@@ -195,7 +197,7 @@ class Network:
         Equal to ``compile_plan(plan)``; shares the structure unless something that
         carries traffic was added or removed.
         """
-        items = []
+        items: list[Item] = []
         for step in steps:
             if isinstance(step, Add | Remove):
                 if isinstance(step.item, Router | Segment | Link):
@@ -206,7 +208,7 @@ class Network:
                 return compile_plan(plan)
         return self._changed(items) if items else self
 
-    def _changed(self, items: Iterable[object]) -> Network:
+    def _changed(self, items: Iterable[Item]) -> Network:
         s = self.structure
         cost, link_up = self.cost.copy(), self.link_up.copy()
         vertex_up, drained = self.vertex_up.copy(), self.drained.copy()

@@ -12,7 +12,7 @@ import numpy.typing as npt
 
 from netsketch.routing import derive
 from netsketch.routing.allpairs import distances_from, unreached
-from netsketch.routing.network import Distances, Ints, Network
+from netsketch.routing.network import BLOCKED, Distances, Ints, Network
 
 Words = npt.NDArray[np.uint64]
 
@@ -105,15 +105,14 @@ class Routes:
         """Which arcs (A,) lie on a shortest path: the source tree."""
         s, row = self.network.structure, self.row.astype(np.int64)
         weight = np.where(s.tail == self.source, self.network.weight, self.network.transit)
-        usable = (weight != derive.BLOCKED) & (self.row[s.tail] != self.unreached)
-        return usable & (row[s.tail] + weight == row[s.head])
+        usable = (weight != BLOCKED) & (self.row[s.tail] != self.unreached)
+        tight: npt.NDArray[np.bool_] = usable & (row[s.tail] + weight == row[s.head])
+        return tight
 
     @cached_property
     def _along(self) -> _AlongPaths:
         s, n = self.network.structure, self.network.structure.vertices
-        found = _AlongPaths(
-            np.empty(n, np.int32), np.empty(n), np.empty(n), np.empty(n, np.int64)
-        )
+        found = _AlongPaths(np.empty(n, np.int32), np.empty(n), np.empty(n), np.empty(n, np.int64))
         derive.along_paths(
             s.indptr, s.head, s.link, s.routers, self.network.weight, self.network.transit,
             self.network.delay, self.source, self.row, self.unreached, self.order,
@@ -174,7 +173,7 @@ class Routes:
         passes on what came for each router beyond it.
         """
         s = self.network.structure
-        arcs, onward = self._arcs_towards(target)
+        onward = self._onward_to(target)
         flow: dict[int, float] = {self.source: 1.0}
         found = []
         for u in (int(v) for v in self.order if int(v) in onward):
@@ -189,13 +188,12 @@ class Routes:
                 found.append(ShareOfLink(link, s.vertex_ids[u], s.vertex_ids[v], share))
         return found
 
-    def _arcs_towards(self, target: int) -> tuple[list[int], dict[int, list[int]]]:
-        """Return the tight arcs on a path to ``target``, also by tail."""
+    def _onward_to(self, target: int) -> dict[int, list[int]]:
+        """Return the tight arcs on a path to ``target``, by tail."""
         s = self.network.structure
-        arcs: list[int] = []
         onward: dict[int, list[int]] = {}
         if self.cost(target) is None:
-            return arcs, onward
+            return onward
         ahead, seen = [target], {target}
         while ahead:
             v = ahead.pop()
@@ -203,14 +201,13 @@ class Routes:
                 if not self.tight[arc]:
                     continue
                 u = int(s.tail[arc])
-                arcs.append(int(arc))
                 onward.setdefault(u, []).append(int(arc))
                 if u not in seen:
                     seen.add(u)
                     ahead.append(u)
         for out in onward.values():
             out.sort()
-        return arcs, onward
+        return onward
 
     def _part(
         self, arc: int, beside: list[int], onward: dict[int, list[int]], target: int
