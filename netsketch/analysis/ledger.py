@@ -10,10 +10,13 @@ import numpy as np
 import numpy.typing as npt
 
 from netsketch.routing import AllPairs, Cancelled, Network, NextHop, Routes, derive, never
-from netsketch.routing.allpairs import over_sources
+from netsketch.routing.allpairs import over_sources, unreached
+from netsketch.routing.network import Distances
 
 OUTCOMES = {derive.MOVED: "moved", derive.CUT_OFF: "cut off", derive.RESTORED: "restored"}
 """Outcome code -> the word for it."""
+
+UNCHANGED = derive.UNCHANGED
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,7 +43,7 @@ class Ledger:
     def __init__(self, before: AllPairs, after: AllPairs, outcomes: npt.NDArray[np.int8]) -> None:
         self.routers = before.network.structure.vertex_ids[: before.network.structure.routers]
         self._networks = before.network, after.network
-        sources, targets = np.nonzero(outcomes != derive.UNCHANGED)
+        sources, targets = np.nonzero(outcomes != UNCHANGED)
         self.sources, self.targets = sources.astype(np.int32), targets.astype(np.int32)
         self.outcomes = outcomes[sources, targets]
         self.before, self.after = (_costs(pairs, sources, targets) for pairs in (before, after))
@@ -81,35 +84,54 @@ def _costs(
     return costs
 
 
-def compare(before: AllPairs, after: AllPairs, cancelled: Callable[[], bool] = never) -> Ledger:
-    """Return the ledger of ``after`` against ``before``, two networks on one structure.
+def outcomes_of(
+    old: Network,
+    new: Network,
+    sources: npt.NDArray[np.int32],
+    before: Distances,
+    after: Distances,
+    cancelled: Callable[[], bool] = never,
+) -> npt.NDArray[np.int8]:
+    """Return what becomes of every vertex (S, V) for each of ``sources`` (S,), whose
+    distances are ``before`` in ``old`` and ``after`` in ``new``: codes of
+    :data:`OUTCOMES`, or :data:`UNCHANGED`.
 
     A pair is moved when it is connected in both and its cost or its set of next hops
     differs, cut off when connected before only, restored when connected after only. Pairs
-    that begin or end at a router that failed (up before, down after) are left out.
-    Raises :class:`~netsketch.routing.Cancelled`.
+    that begin or end at a vertex that failed (up before, down after) count as unchanged.
+    Raises ``ValueError`` where the networks have different structures, and
+    :class:`~netsketch.routing.Cancelled`.
     """
-    old, new = before.network, after.network
     s = old.structure
     if s is not new.structure:
         raise ValueError("the two networks have different structures")
     changed = changed_arcs(old, new)
-    outcomes = np.full((s.routers, s.routers), derive.UNCHANGED, np.int8)
+    outcomes = np.full((len(sources), s.vertices), UNCHANGED, np.int8)
 
     def work(first: int, last: int) -> None:
         if cancelled():
             raise Cancelled
+        part = slice(first, last)
         derive.compare_rows(
             s.indptr, s.head, s.tail, s.first_parallel, s.routers, changed, old.weight,
-            old.transit, new.weight, new.transit, before.unreached, after.unreached, first, last,
-            before.distances, after.distances, outcomes,
+            old.transit, new.weight, new.transit, unreached(before.dtype.type), sources[part],
+            before[part], after[part], outcomes[part],
         )  # fmt: skip
 
-    over_sources(s.routers, work, chunk=64)
-    failed = (old.vertex_up & ~new.vertex_up)[: s.routers]
-    outcomes[failed, :] = derive.UNCHANGED
-    outcomes[:, failed] = derive.UNCHANGED
-    return Ledger(before, after, outcomes)
+    over_sources(len(sources), work, chunk=64)
+    failed = old.vertex_up & ~new.vertex_up
+    outcomes[failed[sources], :] = UNCHANGED
+    outcomes[:, failed] = UNCHANGED
+    return outcomes
+
+
+def compare(before: AllPairs, after: AllPairs, cancelled: Callable[[], bool] = never) -> Ledger:
+    """Return the ledger of ``after`` against ``before``: :func:`outcomes_of` every ordered
+    pair of routers."""
+    old, new = before.network, after.network
+    routers = np.arange(old.structure.routers, dtype=np.int32)
+    outcomes = outcomes_of(old, new, routers, before.distances, after.distances, cancelled)
+    return Ledger(before, after, outcomes[:, : len(routers)])
 
 
 def changed_arcs(old: Network, new: Network) -> npt.NDArray[np.int32]:

@@ -254,6 +254,52 @@ MOVED, CUT_OFF, RESTORED, UNCHANGED = 0, 1, 2, -1
 
 
 @compiled
+def is_touched(
+    indptr: Array,
+    head: Array,
+    tail: Array,
+    changed: Array,
+    weight: Array,
+    transit: Array,
+    source: int,
+    row: Array,
+    unreached: int,
+) -> bool:
+    """Tell whether any of the ``changed`` arcs lies on a shortest path from ``source``."""
+    for i in range(len(changed)):
+        a = changed[i]
+        if is_tight(a, tail[a], head, weight, transit, source, row, unreached):
+            return True
+    return False
+
+
+@compiled
+def source_masks(
+    indptr: Array,
+    head: Array,
+    first_parallel: Array,
+    routers: int,
+    weight: Array,
+    transit: Array,
+    source: int,
+    row: Array,
+    unreached: int,
+    starts: Array,
+    waiting: Array,
+    order: Array,
+) -> Array:
+    """Return :func:`next_hop_masks` of one source (V, W)."""
+    words = (starts[-1] + 63) >> 6
+    masks = np.empty((len(indptr) - 1, words), np.uint64)
+    reached = tight_order(indptr, head, weight, transit, source, row, unreached, waiting, order)
+    next_hop_masks(
+        indptr, head, first_parallel, routers, weight, transit, source, row, unreached, order,
+        reached, starts, masks, np.empty(words, np.uint64),
+    )  # fmt: skip
+    return masks
+
+
+@compiled
 def compare_rows(
     indptr: Array,
     head: Array,
@@ -265,64 +311,42 @@ def compare_rows(
     transit_old: Array,
     weight: Array,
     transit: Array,
-    unreached_old: int,
     unreached: int,
-    first: int,
-    last: int,
+    sources: Array,
     rows_old: Array,
     rows: Array,
     outcomes: Array,
 ) -> None:
-    """Write what becomes of each ordered pair of routers into ``outcomes`` (R, R) for
-    sources ``first … last - 1``; ``rows_old`` and ``rows`` are their distances before and
-    after. A source no changed arc is tight for, before or after, keeps every next hop.
+    """Write what becomes of each pair into ``outcomes`` (S, V), one row for each of
+    ``sources`` (S,); ``rows_old`` and ``rows`` are their distances before and after.
+
+    A source no changed arc is tight for, before or after, keeps every next hop.
     """
     vertices = len(indptr) - 1
     waiting = np.zeros(vertices, np.int32)
     order = np.empty(vertices, np.int32)
-    for source in range(first, last):
-        outcomes[source, :] = UNCHANGED
-        old, new = rows_old[source], rows[source]
-        hit = False
-        for i in range(len(changed)):
-            a = changed[i]
-            u = tail[a]
-            if is_tight(
-                a, u, head, weight_old, transit_old, source, old, unreached_old
-            ) or is_tight(a, u, head, weight, transit, source, new, unreached):
-                hit = True
-                break
-        if not hit:
+    for i in range(len(sources)):
+        source, old, new = sources[i], rows_old[i], rows[i]
+        outcomes[i, :] = UNCHANGED
+        if not is_touched(
+            indptr, head, tail, changed, weight_old, transit_old, source, old, unreached
+        ) and not is_touched(indptr, head, tail, changed, weight, transit, source, new, unreached):
             continue
         starts = block_starts(indptr, head, routers, source)
-        words = (starts[-1] + 63) >> 6
-        masks_old = np.empty((vertices, words), np.uint64)
-        masks = np.empty((vertices, words), np.uint64)
-        spare = np.empty(words, np.uint64)
-        reached = tight_order(
-            indptr, head, weight_old, transit_old, source, old, unreached_old, waiting, order
-        )
-        next_hop_masks(
+        masks_old = source_masks(
             indptr, head, first_parallel, routers, weight_old, transit_old, source, old,
-            unreached_old, order, reached, starts, masks_old, spare,
+            unreached, starts, waiting, order,
         )  # fmt: skip
-        reached = tight_order(indptr, head, weight, transit, source, new, unreached, waiting, order)
-        next_hop_masks(
+        masks = source_masks(
             indptr, head, first_parallel, routers, weight, transit, source, new, unreached,
-            order, reached, starts, masks, spare,
+            starts, waiting, order,
         )  # fmt: skip
-        for t in range(routers):
-            if t == source:
+        for t in range(vertices):
+            if t == source or (old[t] == unreached and new[t] == unreached):
                 continue
-            if old[t] == unreached_old:
-                if new[t] != unreached:
-                    outcomes[source, t] = RESTORED
+            if old[t] == unreached:
+                outcomes[i, t] = RESTORED
             elif new[t] == unreached:
-                outcomes[source, t] = CUT_OFF
-            elif old[t] != new[t]:
-                outcomes[source, t] = MOVED
-            else:
-                for k in range(words):
-                    if masks_old[t, k] != masks[t, k]:
-                        outcomes[source, t] = MOVED
-                        break
+                outcomes[i, t] = CUT_OFF
+            elif old[t] != new[t] or (masks_old[t] != masks[t]).any():
+                outcomes[i, t] = MOVED

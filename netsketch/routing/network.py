@@ -24,6 +24,7 @@ from netsketch.model import (
     Link,
     LinkCost,
     LinkState,
+    Node,
     Plan,
     Remove,
     Router,
@@ -234,7 +235,7 @@ def compile_plan(plan: Plan, trial: Trial | None = None) -> Network:
     """Return the arrays of ``plan`` with ``trial`` laid over it (default: without any).
     O(items)."""
     routers, segments = plan.routers(), plan.segments()
-    nodes = [*routers, *segments]
+    nodes: list[Node] = [*routers, *segments]
     vertex_of = {node.id: index for index, node in enumerate(nodes)}
     links = list(plan.links)
     structure = Structure.build(
