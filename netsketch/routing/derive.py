@@ -35,17 +35,7 @@ def block_starts(indptr: Array, head: Array, routers: int, source: int) -> Array
 
 
 @compiled
-def is_tight(
-    a: int, u: int, head: Array, weight: Array, transit: Array, source: int, row: Array,
-    unreached: int,
-) -> bool:  # fmt: skip
-    """Tell whether arc ``a`` out of ``u`` lies on a shortest path from ``source``."""
-    w = weight[a] if u == source else transit[a]
-    return bool(w != BLOCKED and row[u] != unreached and row[u] + np.int64(w) == row[head[a]])
-
-
-@compiled
-def tight_order(
+def tight_arcs(
     indptr: Array,
     head: Array,
     weight: Array,
@@ -53,33 +43,46 @@ def tight_order(
     source: int,
     row: Array,
     unreached: int,
-    waiting: Array,
+    ptr: Array,
+    arcs: Array,
     order: Array,
 ) -> int:
-    """Write the reached vertices into ``order`` so that every tight arc goes forward, the
-    source first; return how many. O(arcs). ``waiting`` (V,) is scratch, 0 before and after.
+    """Find the arcs on shortest paths from ``source`` and an order in which they all go
+    forward. O(arcs).
+
+    ``arcs[ptr[u] : ptr[u + 1]]`` become the tight arcs out of ``u``; ``ptr`` is (V + 1,),
+    ``arcs`` (A,). The reached vertices are written into ``order`` (V,), the source first;
+    their number is returned.
     """
     vertices = len(indptr) - 1
+    waiting = np.zeros(vertices, np.int32)
+    found = 0
     for u in range(vertices):
-        if row[u] == unreached:
+        ptr[u] = found
+        d = np.int64(row[u])
+        if d == unreached:
             continue
+        out = weight if u == source else transit
         for a in range(indptr[u], indptr[u + 1]):
-            if is_tight(a, u, head, weight, transit, source, row, unreached):
+            w = out[a]
+            if w != BLOCKED and d + w == row[head[a]]:
+                arcs[found] = a
+                found += 1
                 waiting[head[a]] += 1
+    ptr[vertices] = found
     order[0] = source
-    found = 1
+    reached = 1
     done = 0
-    while done < found:
+    while done < reached:
         u = order[done]
         done += 1
-        for a in range(indptr[u], indptr[u + 1]):
-            if is_tight(a, u, head, weight, transit, source, row, unreached):
-                v = head[a]
-                waiting[v] -= 1
-                if waiting[v] == 0:
-                    order[found] = v
-                    found += 1
-    return found
+        for i in range(ptr[u], ptr[u + 1]):
+            v = head[arcs[i]]
+            waiting[v] -= 1
+            if waiting[v] == 0:
+                order[reached] = v
+                reached += 1
+    return reached
 
 
 @compiled
@@ -126,31 +129,34 @@ def next_hop_masks(
     first_parallel: Array,
     routers: int,
     weight: Array,
-    transit: Array,
     source: int,
     row: Array,
-    unreached: int,
+    ptr: Array,
+    arcs: Array,
     order: Array,
     reached: int,
     starts: Array,
-    masks: Array,
-    spare: Array,
-) -> None:
-    """Write the set of next hops to every vertex into ``masks`` (V, W), one bit each.
-    O(arcs x W). ``spare`` (W,) is scratch."""
-    masks[:] = 0
+) -> Array:
+    """Return the set of next hops to every vertex (V, W), one bit each. O(arcs x W)."""
+    words = max(1, (starts[-1] + 63) >> 6)
+    masks = np.zeros((len(indptr) - 1, words), np.uint64)
+    spare = np.empty(words, np.uint64)
     for i in range(reached):
         u = order[i]
-        for a in range(indptr[u], indptr[u + 1]):
-            if not is_tight(a, u, head, weight, transit, source, row, unreached):
+        inherits = u != source and u < routers
+        for j in range(ptr[u], ptr[u + 1]):
+            v = head[arcs[j]]
+            if inherits:
+                for k in range(words):
+                    masks[v, k] |= masks[u, k]
                 continue
             carried(
-                a, u, indptr, head, first_parallel, routers, weight, source, row, starts, masks,
-                spare,
+                arcs[j], u, indptr, head, first_parallel, routers, weight, source, row, starts,
+                masks, spare,
             )  # fmt: skip
-            v = head[a]
-            for k in range(len(spare)):
+            for k in range(words):
                 masks[v, k] |= spare[k]
+    return masks
 
 
 @compiled
@@ -160,52 +166,45 @@ def arc_masks(
     first_parallel: Array,
     routers: int,
     weight: Array,
-    transit: Array,
     source: int,
     row: Array,
-    unreached: int,
+    ptr: Array,
+    arcs: Array,
     starts: Array,
     masks: Array,
-    out: Array,
-) -> None:
-    """Write the next hops each tight arc carries into ``out`` (A, W); 0 for other arcs.
+) -> Array:
+    """Return the next hops each arc carries (A, W); 0 for arcs that are not tight.
 
     On an arc from the source to a segment those are the routers beyond the segment.
     """
-    out[:] = 0
+    out = np.zeros((len(head), masks.shape[1]), np.uint64)
     for u in range(len(indptr) - 1):
-        if row[u] == unreached:
-            continue
-        for a in range(indptr[u], indptr[u + 1]):
-            if is_tight(a, u, head, weight, transit, source, row, unreached):
-                carried(
-                    a, u, indptr, head, first_parallel, routers, weight, source, row, starts,
-                    masks, out[a],
-                )  # fmt: skip
-    first = indptr[source]
-    for b in range(first, indptr[source + 1]):
+        for j in range(ptr[u], ptr[u + 1]):
+            carried(
+                arcs[j], u, indptr, head, first_parallel, routers, weight, source, row, starts,
+                masks, out[arcs[j]],
+            )  # fmt: skip
+    for j in range(ptr[source], ptr[source + 1]):
+        b = arcs[j]
         g = head[b]
-        if g < routers or not is_tight(b, source, head, weight, transit, source, row, unreached):
+        if g < routers:
             continue
-        low, high = starts[b - first] + 1, starts[b - first + 1]
-        for a in range(indptr[g], indptr[g + 1]):
+        low, high = starts[b - indptr[source]] + 1, starts[b - indptr[source] + 1]
+        for i in range(ptr[g], ptr[g + 1]):
             for bit in range(low, high):
-                if out[a, bit >> 6] & (np.uint64(1) << np.uint64(bit & 63)):
-                    out[b, bit >> 6] |= np.uint64(1) << np.uint64(bit & 63)
+                out[b, bit >> 6] |= out[arcs[i], bit >> 6] & (np.uint64(1) << np.uint64(bit & 63))
+    return out
 
 
 @compiled
 def along_paths(
-    indptr: Array,
     head: Array,
     link: Array,
     routers: int,
-    weight: Array,
-    transit: Array,
     delay: Array,
     source: int,
-    row: Array,
-    unreached: int,
+    ptr: Array,
+    arcs: Array,
     order: Array,
     reached: int,
     hops: Array,
@@ -230,9 +229,8 @@ def along_paths(
     for i in range(reached):
         u = order[i]
         step = 1 if u < routers else 0
-        for a in range(indptr[u], indptr[u + 1]):
-            if not is_tight(a, u, head, weight, transit, source, row, unreached):
-                continue
+        for j in range(ptr[u], ptr[u + 1]):
+            a = arcs[j]
             v = head[a]
             low, high = least[u] + delay[link[a]], most[u] + delay[link[a]]
             if hops[v] < 0:
@@ -255,7 +253,6 @@ MOVED, CUT_OFF, RESTORED, UNCHANGED = 0, 1, 2, -1
 
 @compiled
 def is_touched(
-    indptr: Array,
     head: Array,
     tail: Array,
     changed: Array,
@@ -268,35 +265,20 @@ def is_touched(
     """Tell whether any of the ``changed`` arcs lies on a shortest path from ``source``."""
     for i in range(len(changed)):
         a = changed[i]
-        if is_tight(a, tail[a], head, weight, transit, source, row, unreached):
+        u = tail[a]
+        w = weight[a] if u == source else transit[a]
+        if w != BLOCKED and row[u] != unreached and row[u] + np.int64(w) == row[head[a]]:
             return True
     return False
 
 
 @compiled
-def source_masks(
-    indptr: Array,
-    head: Array,
-    first_parallel: Array,
-    routers: int,
-    weight: Array,
-    transit: Array,
-    source: int,
-    row: Array,
-    unreached: int,
-    starts: Array,
-    waiting: Array,
-    order: Array,
-) -> Array:
-    """Return :func:`next_hop_masks` of one source (V, W)."""
-    words = (starts[-1] + 63) >> 6
-    masks = np.empty((len(indptr) - 1, words), np.uint64)
-    reached = tight_order(indptr, head, weight, transit, source, row, unreached, waiting, order)
-    next_hop_masks(
-        indptr, head, first_parallel, routers, weight, transit, source, row, unreached, order,
-        reached, starts, masks, np.empty(words, np.uint64),
-    )  # fmt: skip
-    return masks
+def differ(masks_old: Array, masks: Array, t: int) -> bool:
+    """Tell whether two sets of next hops to ``t`` differ."""
+    for k in range(masks.shape[1]):  # noqa: SIM110 - no generators in compiled code
+        if masks_old[t, k] != masks[t, k]:
+            return True
+    return False
 
 
 @compiled
@@ -323,23 +305,30 @@ def compare_rows(
     A source no changed arc is tight for, before or after, keeps every next hop.
     """
     vertices = len(indptr) - 1
-    waiting = np.zeros(vertices, np.int32)
+    ptr = np.empty(vertices + 1, np.int32)
+    arcs = np.empty(len(head), np.int32)
     order = np.empty(vertices, np.int32)
     for i in range(len(sources)):
         source, old, new = sources[i], rows_old[i], rows[i]
         outcomes[i, :] = UNCHANGED
         if not is_touched(
-            indptr, head, tail, changed, weight_old, transit_old, source, old, unreached
-        ) and not is_touched(indptr, head, tail, changed, weight, transit, source, new, unreached):
+            head, tail, changed, weight_old, transit_old, source, old, unreached
+        ) and not is_touched(head, tail, changed, weight, transit, source, new, unreached):
             continue
         starts = block_starts(indptr, head, routers, source)
-        masks_old = source_masks(
-            indptr, head, first_parallel, routers, weight_old, transit_old, source, old,
-            unreached, starts, waiting, order,
+        reached = tight_arcs(
+            indptr, head, weight_old, transit_old, source, old, unreached, ptr, arcs, order
+        )
+        masks_old = next_hop_masks(
+            indptr, head, first_parallel, routers, weight_old, source, old, ptr, arcs, order,
+            reached, starts,
         )  # fmt: skip
-        masks = source_masks(
-            indptr, head, first_parallel, routers, weight, transit, source, new, unreached,
-            starts, waiting, order,
+        reached = tight_arcs(
+            indptr, head, weight, transit, source, new, unreached, ptr, arcs, order
+        )
+        masks = next_hop_masks(
+            indptr, head, first_parallel, routers, weight, source, new, ptr, arcs, order,
+            reached, starts,
         )  # fmt: skip
         for t in range(vertices):
             if t == source or (old[t] == unreached and new[t] == unreached):
@@ -348,5 +337,5 @@ def compare_rows(
                 outcomes[i, t] = RESTORED
             elif new[t] == unreached:
                 outcomes[i, t] = CUT_OFF
-            elif old[t] != new[t] or (masks_old[t] != masks[t]).any():
+            elif old[t] != new[t] or differ(masks_old, masks, t):
                 outcomes[i, t] = MOVED

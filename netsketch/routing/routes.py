@@ -3,7 +3,7 @@ its distance row."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import NamedTuple
 
@@ -12,7 +12,7 @@ import numpy.typing as npt
 
 from netsketch.routing import derive
 from netsketch.routing.allpairs import distances_from, unreached
-from netsketch.routing.network import BLOCKED, Distances, Ints, Network
+from netsketch.routing.network import Distances, Ints, Network
 
 Words = npt.NDArray[np.uint64]
 
@@ -32,6 +32,15 @@ class ShareOfLink(NamedTuple):
     tail: str
     head: str
     share: float
+
+
+@dataclass(frozen=True)
+class _Tree:
+    """Tight arcs by tail (CSR) and the reached vertices in an order all of them follow."""
+
+    ptr: Ints
+    arcs: Ints
+    order: Ints
 
 
 @dataclass(frozen=True)
@@ -57,15 +66,30 @@ class Routes:
         self._sets: dict[bytes, tuple[NextHop, ...]] = {}
 
     @cached_property
+    def _tree(self) -> _Tree:
+        s = self.network.structure
+        tree = _Tree(
+            np.empty(s.vertices + 1, np.int32),
+            np.empty(len(s.head), np.int32),
+            np.empty(s.vertices, np.int32),
+        )
+        reached = derive.tight_arcs(
+            s.indptr, s.head, self.network.weight, self.network.transit, self.source, self.row,
+            self.unreached, tree.ptr, tree.arcs, tree.order,
+        )  # fmt: skip
+        return replace(tree, arcs=tree.arcs[: tree.ptr[-1]], order=tree.order[:reached])
+
+    @property
     def order(self) -> Ints:
         """The reached vertices, the source first, every tight arc going forward."""
-        s = self.network.structure
-        order = np.empty(s.vertices, np.int32)
-        reached = derive.tight_order(
-            s.indptr, s.head, self.network.weight, self.network.transit, self.source, self.row,
-            self.unreached, np.zeros(s.vertices, np.int32), order,
-        )  # fmt: skip
-        return order[:reached]
+        return self._tree.order
+
+    @cached_property
+    def tight(self) -> npt.NDArray[np.bool_]:
+        """Which arcs (A,) lie on a shortest path: the source tree."""
+        tight = np.zeros(len(self.network.structure.head), np.bool_)
+        tight[self._tree.arcs] = True
+        return tight
 
     @cached_property
     def _starts(self) -> npt.NDArray[np.int64]:
@@ -79,44 +103,30 @@ class Routes:
     def masks(self) -> Words:
         """The set of next hops to each vertex (V, W): bit sets, laid out as
         :mod:`netsketch.routing.derive` says."""
-        s, words = self.network.structure, max(1, int(self._starts[-1] + 63) >> 6)
-        masks = np.empty((s.vertices, words), np.uint64)
-        derive.next_hop_masks(
-            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight,
-            self.network.transit, self.source, self.row, self.unreached, self.order,
-            len(self.order), self._starts, masks, np.empty(words, np.uint64),
+        s, tree = self.network.structure, self._tree
+        masks: Words = derive.next_hop_masks(
+            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight, self.source,
+            self.row, tree.ptr, tree.arcs, tree.order, len(tree.order), self._starts,
         )  # fmt: skip
         return masks
 
     @cached_property
     def arc_masks(self) -> Words:
         """The next hops whose traffic each arc carries (A, W); all 0 off the source tree."""
-        s = self.network.structure
-        out = np.empty((len(s.head), self.masks.shape[1]), np.uint64)
-        derive.arc_masks(
-            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight,
-            self.network.transit, self.source, self.row, self.unreached, self._starts,
-            self.masks, out,
+        s, tree = self.network.structure, self._tree
+        masks: Words = derive.arc_masks(
+            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight, self.source,
+            self.row, tree.ptr, tree.arcs, self._starts, self.masks,
         )  # fmt: skip
-        return out
-
-    @cached_property
-    def tight(self) -> npt.NDArray[np.bool_]:
-        """Which arcs (A,) lie on a shortest path: the source tree."""
-        s, row = self.network.structure, self.row.astype(np.int64)
-        weight = np.where(s.tail == self.source, self.network.weight, self.network.transit)
-        usable = (weight != BLOCKED) & (self.row[s.tail] != self.unreached)
-        tight: npt.NDArray[np.bool_] = usable & (row[s.tail] + weight == row[s.head])
-        return tight
+        return masks
 
     @cached_property
     def _along(self) -> _AlongPaths:
-        s, n = self.network.structure, self.network.structure.vertices
+        s, tree, n = self.network.structure, self._tree, self.network.structure.vertices
         found = _AlongPaths(np.empty(n, np.int32), np.empty(n), np.empty(n), np.empty(n, np.int64))
         derive.along_paths(
-            s.indptr, s.head, s.link, s.routers, self.network.weight, self.network.transit,
-            self.network.delay, self.source, self.row, self.unreached, self.order,
-            len(self.order), found.hops, found.least, found.most, found.paths,
+            s.head, s.link, s.routers, self.network.delay, self.source, tree.ptr, tree.arcs,
+            tree.order, len(tree.order), found.hops, found.least, found.most, found.paths,
         )  # fmt: skip
         return found
 
