@@ -1,0 +1,118 @@
+"""Everything one painting needs: the rows, where they lie, what is said about them."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+
+import numpy as np
+from PySide6.QtCore import QRectF
+from PySide6.QtGui import QColor
+
+from netsketch.model import Plan
+from netsketch.readings.reading import Reading
+from netsketch.sheet.contents import Contents, Flags, Floats, contents_of
+from netsketch.sheet.lettering import Lettering
+from netsketch.sheet.lines import Lines, lines_of
+from netsketch.sheet.look import Look
+from netsketch.sheet.marks import Marks, marks_of
+from netsketch.sheet.tags import Tags, place_tags, tags_of
+
+BAND_ROOM = 18.0
+"""Below a plate, for its band."""
+MARGIN = 14.0
+
+
+@dataclass(slots=True)
+class Frame:
+    """One state of the sheet, ready to paint.
+
+    ``scale``: pixels for one sheet unit, which decides the level of detail.
+    ``nodes``, ``links``: what to paint of it; ``still``: paint at full quality.
+    """
+
+    contents: Contents
+    lines: Lines
+    tags: Tags
+    tag_boxes: Floats
+    tag_fits: Flags
+    marks: Marks | None
+    look: Look
+    lettering: Lettering
+    scale: float
+    nodes: Flags
+    links: Flags
+    still: bool = True
+
+    def only(self, nodes: Flags, links: Flags) -> Frame:
+        """Return this frame with these nodes and links alone."""
+        return replace(self, nodes=nodes, links=links)
+
+    def within(self, area: QRectF) -> Frame:
+        """Return this frame with only what can touch ``area`` (sheet units)."""
+        left, top, right, bottom = area.getCoords()
+        room = MARGIN + 6 / self.scale
+        low = np.minimum(self.lines.boxes[:, :2], self.lines.bars[:, :2]) - room
+        high = np.maximum(self.lines.boxes[:, 2:], self.lines.bars[:, 2:]) + room
+        high[:, 1] += BAND_ROOM
+        nodes = (low <= (right, bottom)).all(axis=1) & (high >= (left, top)).all(axis=1)
+        e = self.lines.extents
+        links = (e[:, :2] - room <= (right, bottom)).all(axis=1)
+        links &= (e[:, 2:] + room >= (left, top)).all(axis=1)
+        return self.only(self.nodes & nodes, self.links & links)
+
+    def extent(self) -> QRectF:
+        """Return the rectangle around everything, bands included; empty for nothing."""
+        boxes, bars = self.lines.boxes, self.lines.bars
+        if not len(boxes):
+            return QRectF()
+        left, top = np.minimum(boxes, bars)[:, :2].min(axis=0)
+        right, bottom = np.maximum(boxes, bars)[:, 2:].max(axis=0)
+        return QRectF(left, top, right - left, bottom - top + BAND_ROOM)
+
+    def faded_nodes(self) -> Flags:
+        """Return which nodes the reading passes over."""
+        return np.zeros_like(self.nodes) if self.marks is None else ~self.marks.nodes
+
+
+def frame_of(
+    plan: Plan, reading: Reading | None, look: Look, lettering: Lettering, unit: float
+) -> Frame:
+    """Return a whole plan with a reading as a frame at scale 1."""
+    contents = contents_of(plan, lettering, unit)
+    frame = Frame(
+        contents=contents,
+        lines=lines_of(contents),
+        tags=tags_of(contents, lettering, reading),
+        tag_boxes=np.empty((0, 4)),
+        tag_fits=np.empty(0, dtype=bool),
+        marks=None if reading is None else marks_of(reading, contents, look),
+        look=look,
+        lettering=lettering,
+        scale=1.0,
+        nodes=np.ones(len(contents.nodes.ids), dtype=bool),
+        links=np.ones(len(contents.links.ids), dtype=bool),
+    )
+    frame.tag_boxes, frame.tag_fits = place_tags(frame.tags, frame.lines, contents.links)
+    return frame
+
+
+def relaid(frame: Frame) -> Frame:
+    """Return the frame after places in its contents changed."""
+    lines = lines_of(frame.contents)
+    boxes, fits = place_tags(frame.tags, lines, frame.contents.links)
+    return replace(frame, lines=lines, tag_boxes=boxes, tag_fits=fits)
+
+
+def with_reading(frame: Frame, reading: Reading | None, look: Look) -> Frame:
+    """Return the frame with another reading or look."""
+    tags = tags_of(frame.contents, frame.lettering, reading)
+    boxes, fits = place_tags(tags, frame.lines, frame.contents.links)
+    marks = None if reading is None else marks_of(reading, frame.contents, look)
+    return replace(frame, tags=tags, tag_boxes=boxes, tag_fits=fits, marks=marks, look=look)
+
+
+def mixed(one: str, other: str, share: float) -> QColor:
+    """Return ``share`` of the first colour with the rest of the other."""
+    a, b = QColor(one), QColor(other)
+    parts = zip(a.getRgb()[:3], b.getRgb()[:3], strict=True)
+    return QColor(*(round(x * share + y * (1 - share)) for x, y in parts))

@@ -1,0 +1,127 @@
+"""A reading made ready to paint: strands on the links, roles on the plates.
+
+Each travel over a link becomes one strand (or one for each letter it carries); the
+strands of a link lie side by side, each direction on its own right-hand side.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass, field
+
+import numpy as np
+
+from netsketch.readings.reading import LinkMark, PlateMark, Reading, Travel
+from netsketch.sheet.contents import Contents, Flags, Floats
+from netsketch.sheet.look import Look, cividis
+
+DASHES: dict[str, tuple[float, ...]] = {"way back": (3.0, 1.6), "before": (0.9, 1.1)}
+"""Dash patterns by role, in line widths; the others are solid."""
+_HOLLOW = {"way back", "before"}
+_RAMP_STEPS = 20
+
+
+@dataclass(frozen=True, slots=True)
+class Stroke:
+    """How a strand is drawn. ``edge``: the width of an ink line along both sides, thin
+    for load (pale colours need one) and thick for load beyond capacity."""
+
+    colour: str
+    width: float
+    dash: tuple[float, ...] = ()
+    hollow: bool = False
+    edge: float = 0.0
+
+
+@dataclass(slots=True)
+class Strands:
+    """All strands of one stroke: link rows, offsets to the side, directions."""
+
+    rows: list[int] = field(default_factory=list)
+    offsets: list[float] = field(default_factory=list)
+    directions: list[int] = field(default_factory=list)
+
+
+@dataclass(slots=True)
+class Marks:
+    """What a reading says, by row. ``links`` and ``nodes`` flag what it names."""
+
+    links: Flags
+    nodes: Flags
+    strands: dict[Stroke, Strands]
+    plates: dict[int, PlateMark]
+    reach: Floats
+    """(m,): half the width that a link's strands take."""
+    letters: list[str]
+    hues: list[int]
+
+
+def marks_of(reading: Reading, contents: Contents, look: Look) -> Marks:
+    """Return ``reading`` in the colours of ``look``; ids not on the sheet are passed over."""
+    links, nodes = contents.links, contents.nodes
+    marks = Marks(
+        links=np.zeros(len(links.ids), dtype=bool),
+        nodes=np.zeros(len(nodes.ids), dtype=bool),
+        strands={},
+        plates={},
+        reach=np.zeros(len(links.ids)),
+        letters=[hop.letter for hop in reading.first_hops],
+        hues=[hop.colour for hop in reading.first_hops],
+    )
+    for key, mark in reading.links.items():
+        row = links.row.get(key)
+        if row is not None:
+            marks.links[row] = True
+            _lay_strands(marks, row, list(_strokes(mark, reading, look)))
+    for key, plate in reading.plates.items():
+        row = nodes.row.get(key)
+        if row is not None:
+            marks.nodes[row] = True
+            marks.plates[row] = plate
+    return marks
+
+
+def _lay_strands(marks: Marks, row: int, strokes: list[tuple[Stroke, int]]) -> None:
+    """Set strands side by side across the link, centred on it."""
+    total = sum(stroke.width for stroke, _ in strokes) + 1.0 * max(len(strokes) - 1, 0)
+    marks.reach[row] = total / 2
+    edge = -total / 2
+    for stroke, direction in strokes:
+        strands = marks.strands.setdefault(stroke, Strands())
+        strands.rows.append(row)
+        strands.offsets.append(edge + stroke.width / 2)
+        strands.directions.append(direction)
+        edge += stroke.width + 1.0
+
+
+def _strokes(mark: LinkMark, reading: Reading, look: Look) -> Iterator[tuple[Stroke, int]]:
+    # Positive offsets lie right of tail-to-head (y points down), so -1 comes first.
+    for travel in sorted(mark.travels, key=lambda travel: travel.direction):
+        for stroke in _strokes_of(travel, reading, look):
+            yield stroke, travel.direction
+
+
+def _strokes_of(travel: Travel, reading: Reading, look: Look) -> Iterator[Stroke]:
+    if reading.kind == "load":
+        yield _load_stroke(travel.share)
+        return
+    dash, hollow = DASHES.get(travel.role, ()), travel.role in _HOLLOW
+    role_colour = {
+        "path": look.path,
+        "way back": look.way_back,
+        "before": look.before,
+        "after": look.after,
+    }.get(travel.role)
+    if role_colour is not None:
+        yield Stroke(role_colour, 4.0, dash, hollow)
+        return
+    colours = [look.first_hops[reading.first_hops[i].colour % 7] for i in travel.letters]
+    width = {0: 3.4, 1: 4.0, 2: 3.0}.get(len(colours), 2.4)
+    for colour in colours or [look.ink]:
+        yield Stroke(colour, width, dash, hollow)
+
+
+def _load_stroke(share: float) -> Stroke:
+    held = min(max(share, 0.0), 1.0)
+    step = round(held * _RAMP_STEPS) / _RAMP_STEPS
+    return Stroke(cividis(step), round(1.6 + 6.4 * step, 1), edge=2.2 if share > 1 else 0.8)

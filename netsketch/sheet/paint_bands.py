@@ -1,0 +1,82 @@
+"""Bands along the plates' lower edges: by which first hop, and at what cost."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtGui import QColor, QPainter
+
+from netsketch.readings.reading import PlateMark
+from netsketch.sheet.frame import Frame
+from netsketch.sheet.marks import Marks
+from netsketch.sheet.paint_links import pen_of
+
+BAND_HEIGHT = 14.0
+_BELOW = 3.0
+READABLE, VISIBLE = 0.5, 0.3
+"""The least scales at which band texts and bands are painted; below, the colour fills
+the whole plate."""
+_NO_PEN = Qt.PenStyle.NoPen
+
+Cell = tuple[str, str, str]
+"""Text, colour of the ground ("" for none) and colour of the text."""
+
+
+def paint_bands(painter: QPainter, frame: Frame) -> None:
+    """Paint the bands of the plates that the reading names."""
+    if frame.marks is None:
+        return
+    painter.setFont(frame.lettering.band.font)
+    for row, mark in frame.marks.plates.items():
+        if frame.nodes[row]:
+            cells = _cells(frame, frame.marks, mark)
+            if cells:
+                _paint_band(painter, frame, row, cells)
+
+
+def _cells(frame: Frame, marks: Marks, mark: PlateMark) -> list[Cell]:
+    look = frame.look
+    if mark.role == "cut off":
+        return [("cut off", "", look.ink)]
+    cost = "" if mark.cost is None else str(mark.cost)
+    if not mark.letters:
+        return [(cost, "", look.ink)] if cost and mark.role != "focus" else []
+    cells = []
+    for place, index in enumerate(mark.letters):
+        hue = marks.hues[index] % len(look.first_hops)
+        text = f"{marks.letters[index]} {cost}" if place == 0 and cost else marks.letters[index]
+        cells.append((text, look.first_hops[hue], look.band_texts[hue]))
+    return cells
+
+
+def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) -> None:
+    """Paint the cells side by side under the plate, wider than it where they need be."""
+    face = frame.lettering.band
+    needs = [face.width(text) + 8 for text, _, _ in cells]
+    left, _, right, bottom = frame.lines.boxes[row].tolist()
+    spare = max(0.0, (right - left - sum(needs)) / len(cells))
+    x = min(left, (left + right - sum(needs)) / 2)
+    if frame.scale < VISIBLE:
+        _fill_plate(painter, frame, row, cells)
+        return
+    outline = QRectF(x, bottom + _BELOW, sum(needs) + spare * len(cells), BAND_HEIGHT)
+    for (text, ground, ink), need in zip(cells, needs, strict=True):
+        cell = QRectF(x, outline.top(), need + spare, BAND_HEIGHT)
+        painter.fillRect(cell, QColor(ground or frame.look.paper))
+        if frame.scale >= READABLE:
+            painter.setPen(QColor(ink))
+            start = cell.center().x() - face.width(text) / 2
+            painter.drawText(QPointF(start, cell.center().y() + face.rise), text)
+        x += need + spare
+    if not cells[0][1]:
+        painter.setPen(pen_of(frame, frame.look.ink, 1.2))
+        painter.drawRect(outline)
+
+
+def _fill_plate(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) -> None:
+    """Where a band could not be seen, colour the plate itself."""
+    left, top, right, bottom = frame.lines.boxes[row].tolist()
+    step = (right - left) / len(cells)
+    for place, (_, ground, _) in enumerate(cells):
+        if ground:
+            painter.fillRect(QRectF(left + place * step, top, step, bottom - top), QColor(ground))
+

@@ -1,0 +1,145 @@
+"""Links painted in batches, one path for each style: lines, strands, chevrons, breaks."""
+
+from __future__ import annotations
+
+import numpy as np
+from PySide6.QtCore import Qt
+from PySide6.QtGui import QColor, QPainter, QPen
+
+from netsketch.sheet.contents import Floats, Rows
+from netsketch.sheet.frame import Frame
+from netsketch.sheet.marks import Strands, Stroke
+from netsketch.sheet.paths import polylines
+from netsketch.sheet.tags import GAP
+
+_FLAT = Qt.PenCapStyle.FlatCap
+_ROUND_JOIN = Qt.PenJoinStyle.RoundJoin
+_NO_PEN = Qt.PenStyle.NoPen
+_NO_BRUSH = Qt.BrushStyle.NoBrush
+
+
+def paint_links(painter: QPainter, frame: Frame) -> None:
+    """Paint the links of ``frame``: plain lines first, then what the reading says."""
+    painter.setBrush(_NO_BRUSH)
+    _paint_lines(painter, frame)
+    if frame.marks is not None:
+        for stroke, strands in frame.marks.strands.items():
+            _paint_strands(painter, frame, stroke, strands)
+    _paint_breaks(painter, frame)
+
+
+def pen_of(frame: Frame, colour: str | QColor, width: float, least: float = 1.0) -> QPen:
+    """Return a pen ``width`` sheet units wide, and at least ``least`` pixels."""
+    pen = QPen(QColor(colour), max(width, least / frame.scale))
+    pen.setCapStyle(_FLAT)
+    pen.setJoinStyle(_ROUND_JOIN)
+    return pen
+
+
+def stroke_path(painter: QPainter, frame: Frame, pen: QPen, rows: Rows, points: Floats) -> None:
+    """Stroke the lines ``points`` (k, 4, 2) of link ``rows``, broken where one is down."""
+    painter.setPen(pen)
+    down = frame.contents.links.down[rows]
+    bent = frame.lines.bent[rows]
+    painter.drawPath(polylines(points[~down & ~bent][:, 1:3]))
+    if (bent & ~down).any():
+        painter.drawPath(polylines(points[bent & ~down]))
+    if down.any():
+        painter.drawPath(polylines(_halves(frame, rows[down], points[down])))
+
+
+def _halves(frame: Frame, rows: Rows, points: Floats) -> Floats:
+    """Return both sides of the gap, tail sides first, as (2k, 3, 2)."""
+    gap = np.minimum(GAP, frame.lines.length[rows] / 3)[:, None] * frame.lines.along[rows]
+    middle = (points[:, 1] + points[:, 2]) / 2
+    return np.concatenate(
+        [
+            np.stack([points[:, 0], points[:, 1], middle - gap], axis=1),
+            np.stack([points[:, 3], points[:, 2], middle + gap], axis=1),
+        ]
+    )
+
+
+def _paint_lines(painter: QPainter, frame: Frame) -> None:
+    """Paint what carries no strand: ink on the bare sheet, faded under a reading."""
+    links, nodes, look = frame.contents.links, frame.contents.nodes, frame.look
+    idle = links.down | nodes.down[links.tail] | nodes.down[links.head]
+    shown = frame.links
+    faded = idle
+    if frame.marks is not None:
+        shown = shown & (frame.marks.reach == 0)
+        faded = idle | ~frame.marks.links
+    for colour, mask in ((look.hairline, faded), (look.ink, ~faded)):
+        for width in np.unique(links.width[shown & mask]):
+            rows = np.flatnonzero(shown & mask & (links.width == width))
+            thin = float(width) * 0.8 if colour == look.hairline else float(width)
+            pen = pen_of(frame, colour, thin, 1.0 if frame.scale > 0.5 else 0.7)
+            stroke_path(painter, frame, pen, rows, frame.lines.points[rows])
+
+
+def _paint_strands(painter: QPainter, frame: Frame, stroke: Stroke, strands: Strands) -> None:
+    rows = np.array(strands.rows, dtype=np.intp)
+    offsets, directions = np.array(strands.offsets), np.array(strands.directions)
+    shown = frame.links[rows]
+    if not shown.any():
+        return
+    rows, offsets, directions = rows[shown], offsets[shown], directions[shown]
+    points = frame.lines.points[rows] + (frame.lines.across[rows] * offsets[:, None])[:, None, :]
+    if stroke.edge:
+        pen = pen_of(frame, frame.look.ink, stroke.width + 2 * stroke.edge, 2.4)
+        stroke_path(painter, frame, pen, rows, points)
+    pen = pen_of(frame, stroke.colour, stroke.width, 1.6)
+    if stroke.dash:
+        pen.setDashPattern(list(stroke.dash))
+    backward = directions < 0
+    points[backward] = points[backward][:, ::-1]
+    stroke_path(painter, frame, pen, rows, points)
+    _paint_chevrons(painter, frame, stroke, rows, points)
+
+
+def _paint_chevrons(
+    painter: QPainter, frame: Frame, stroke: Stroke, rows: Rows, points: Floats
+) -> None:
+    """Paint arrowheads along the direction of travel, clear of the tags."""
+    arrows = chevrons(frame, rows, points, max(stroke.width, 1.6 / frame.scale))
+    if not len(arrows):
+        return
+    edge = frame.look.ink if stroke.edge else frame.look.paper
+    painter.setPen(pen_of(frame, stroke.colour if stroke.hollow else edge, 1.2, 0.6))
+    painter.setBrush(QColor(frame.look.paper if stroke.hollow else stroke.colour))
+    painter.drawPath(polylines(arrows, closed=True))
+    painter.setBrush(_NO_BRUSH)
+
+
+def chevrons(frame: Frame, rows: Rows, points: Floats, width: float) -> Floats:
+    """Return arrowheads (k, 4, 2) on the lines ``points``, as many as their length asks."""
+    length = frame.lines.length[rows]
+    size = np.clip(3.4 + 0.9 * width, 6.5, 10.0) / min(1.0, max(frame.scale * 1.6, 0.2))
+    count = np.select([length < 2.4 * size, length < 90, length < 230, length < 420], [0, 1, 2, 4], 6)
+    along = points[:, 2] - points[:, 1]
+    along /= np.maximum(np.hypot(along[:, 0], along[:, 1]), 1e-9)[:, None]
+    across = np.stack([-along[:, 1], along[:, 0]], axis=1)
+    found = []
+    for number in np.unique(count[count > 0]):
+        chosen = count == number
+        for place in _places(int(number)):
+            tip = points[chosen, 1] + along[chosen] * (length[chosen] * place + size / 2)[:, None]
+            back, wing = along[chosen] * size, across[chosen] * size * 0.62
+            found.append(np.stack([tip, tip - back + wing, tip - back * 0.7, tip - back - wing], axis=1))
+    return np.concatenate(found) if found else np.empty((0, 4, 2))
+
+
+def _places(count: int) -> list[float]:
+    """An even number leaves the middle to the tag; a single one stands behind it."""
+    return [0.74] if count == 1 else [(i + 0.5) / count for i in range(count)]
+
+
+def _paint_breaks(painter: QPainter, frame: Frame) -> None:
+    """Paint a short bar on each side of the gap in a link that is down."""
+    rows = np.flatnonzero(frame.links & frame.contents.links.down)
+    if not len(rows):
+        return
+    ends = _halves(frame, rows, frame.lines.points[rows])[:, 2]
+    wing = np.concatenate([frame.lines.across[rows]] * 2) * max(7.0, 4.0 / frame.scale)
+    painter.setPen(pen_of(frame, frame.look.ink, 2.2, 1.4))
+    painter.drawPath(polylines(np.stack([ends - wing, ends + wing], axis=1)))

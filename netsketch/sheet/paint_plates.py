@@ -1,0 +1,178 @@
+"""Plates and rails: shapes and names, with their state in the trial."""
+
+from __future__ import annotations
+
+import numpy as np
+from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtGui import QBrush, QColor, QPainter, QPainterPath
+
+from netsketch.sheet.contents import Flags, Rows
+from netsketch.sheet.frame import Frame
+from netsketch.sheet.lettering import Face
+from netsketch.sheet.paint_links import pen_of
+from netsketch.sheet.paint_tags import paint_flags
+from netsketch.sheet.paths import polylines, rectangles
+
+READABLE_NAME, READABLE_SITE = 0.42, 0.55
+"""The least scales at which names and sites are painted."""
+_ROUND = 7.0
+_NO_PEN = Qt.PenStyle.NoPen
+_NO_BRUSH = Qt.BrushStyle.NoBrush
+
+
+def paint_plates(painter: QPainter, frame: Frame) -> None:
+    """Paint the plates and rails of ``frame``."""
+    _paint_bars(painter, frame)
+    focus = _with_role(frame, "focus")
+    cut_off = _with_role(frame, "cut off")
+    faded = frame.faded_nodes()
+    plates = frame.nodes & ~frame.contents.nodes.segment
+    look = frame.look
+    _paint_shapes(painter, frame, plates & ~faded & ~focus, look.plate, look.ink)
+    _paint_shapes(painter, frame, plates & faded, look.plate, look.hairline)
+    _paint_shapes(painter, frame, frame.nodes & focus, look.ink, look.ink)
+    _paint_hatching(painter, frame, frame.nodes & cut_off)
+    _paint_second_outlines(painter, frame)
+    _paint_names(painter, frame, focus, faded)
+    tried = np.flatnonzero(frame.nodes & frame.contents.nodes.tried)
+    if len(tried):
+        paint_flags(painter, frame, frame.lines.boxes[tried][:, [2, 1]] + (3, -3), 10.0, 1)
+
+
+def _with_role(frame: Frame, role: str) -> Flags:
+    flags = np.zeros_like(frame.nodes)
+    if frame.marks is not None:
+        rows = [row for row, mark in frame.marks.plates.items() if mark.role == role]
+        flags[rows] = True
+    return flags
+
+
+def _paint_bars(painter: QPainter, frame: Frame) -> None:
+    nodes, look = frame.contents.nodes, frame.look
+    rails = frame.nodes & nodes.segment
+    if not rails.any():
+        return
+    faded = frame.faded_nodes() | nodes.down
+    painter.setPen(_NO_PEN)
+    for colour, mask in ((look.hairline, faded), (look.ink, ~faded)):
+        painter.setBrush(QColor(colour))
+        painter.drawPath(rectangles(frame.lines.bars[rails & mask]))
+    _paint_rail_breaks(painter, frame, np.flatnonzero(rails & nodes.down))
+
+
+def _paint_rail_breaks(painter: QPainter, frame: Frame, rows: Rows) -> None:
+    """Break a rail that is down as a link is broken: a gap, a bar on each side."""
+    for left, top, right, bottom in frame.lines.bars[rows]:
+        middle = (left + right) / 2
+        painter.fillRect(QRectF(middle - 10, top - 1, 20, bottom - top + 2), QColor(frame.look.paper))
+        painter.setPen(pen_of(frame, frame.look.ink, 2.2, 1.4))
+        for x in (middle - 10, middle + 10):
+            painter.drawLine(QPointF(x, top - 6), QPointF(x, bottom + 6))
+
+
+def _paint_shapes(painter: QPainter, frame: Frame, mask: Flags, fill: str, edge: str) -> None:
+    """Paint plates: outlined, dashed when drained, broken when down."""
+    nodes = frame.contents.nodes
+    for special, dashed in ((~nodes.drained & ~nodes.down, False), (nodes.drained & ~nodes.down, True)):
+        rows = np.flatnonzero(mask & special)
+        if len(rows):
+            pen = pen_of(frame, edge if not dashed or fill != edge else frame.look.paper, 1.5)
+            if dashed:
+                pen = pen_of(frame, frame.look.ink if fill != edge else frame.look.paper, 1.8)
+                pen.setDashPattern([3.4, 2.4])
+            painter.setPen(pen)
+            painter.setBrush(QColor(fill))
+            painter.drawPath(_outlines(frame, rows))
+    _paint_down(painter, frame, np.flatnonzero(mask & nodes.down), fill, edge)
+
+
+def _outlines(frame: Frame, rows: Rows, grown: float = 0.0) -> QPainterPath:
+    """Return the plates' outlines; square corners where round ones could not be seen."""
+    boxes = frame.lines.boxes[rows] + (-grown, -grown, grown, grown)
+    if frame.scale < READABLE_NAME:
+        return rectangles(boxes)
+    path = QPainterPath()
+    for left, top, right, bottom in boxes.tolist():
+        path.addRoundedRect(left, top, right - left, bottom - top, _ROUND + grown, _ROUND + grown)
+    return path
+
+
+def _paint_down(painter: QPainter, frame: Frame, rows: Rows, fill: str, edge: str) -> None:
+    """Break the outline of a plate that is down at the middle of its upper and lower
+    edge, with a short bar on each side of the gap."""
+    if not len(rows):
+        return
+    look = frame.look
+    painter.setBrush(QColor(fill))
+    painter.setPen(pen_of(frame, edge, 1.5))
+    painter.drawPath(_outlines(frame, rows))
+    boxes = frame.lines.boxes[rows]
+    middle = boxes[:, 0:3:2].mean(axis=1)
+    for y in (boxes[:, 1], boxes[:, 3]):
+        gap = np.stack([np.stack([middle - 8, y], 1), np.stack([middle + 8, y], 1)], axis=1)
+        painter.setPen(pen_of(frame, look.paper, 4.0))
+        painter.drawPath(polylines(gap))
+        ends = gap.reshape(-1, 2)
+        painter.setPen(pen_of(frame, look.ink, 2.2, 1.4))
+        painter.drawPath(polylines(np.stack([ends - (0, 5), ends + (0, 5)], axis=1)))
+
+
+def _paint_hatching(painter: QPainter, frame: Frame, mask: Flags) -> None:
+    rows = np.flatnonzero(mask)
+    if not len(rows):
+        return
+    painter.setPen(_NO_PEN)
+    painter.setBrush(QBrush(QColor(frame.look.faded), Qt.BrushStyle.BDiagPattern))
+    painter.drawPath(_outlines(frame, rows))
+    painter.drawPath(rectangles(frame.lines.bars[rows]))
+    painter.setBrush(_NO_BRUSH)
+    painter.setPen(pen_of(frame, frame.look.ink, 1.5))
+    painter.drawPath(_outlines(frame, rows[~frame.contents.nodes.segment[rows]]))
+
+
+def _paint_second_outlines(painter: QPainter, frame: Frame) -> None:
+    """Paint the outline that says: moved against the plan."""
+    if frame.marks is None:
+        return
+    moved = [row for row, mark in frame.marks.plates.items() if mark.moved and frame.nodes[row]]
+    painter.setBrush(_NO_BRUSH)
+    painter.setPen(pen_of(frame, frame.look.ink, 1.5))
+    painter.drawPath(_outlines(frame, np.array(moved, dtype=np.intp), grown=4.0))
+
+
+def _paint_names(painter: QPainter, frame: Frame, focus: Flags, faded: Flags) -> None:
+    if frame.scale < READABLE_NAME:
+        return
+    look, nodes = frame.look, frame.contents.nodes
+    quiet = (faded | nodes.down) & ~focus
+    groups = (
+        (frame.nodes & ~focus & ~quiet, look.ink, look.soft),
+        (frame.nodes & quiet, look.faded, look.faded),
+        (frame.nodes & focus, look.paper, look.focus_soft),
+    )
+    for mask, name, site in groups:
+        rows = np.flatnonzero(mask)
+        _paint_text(painter, frame, rows, nodes.names, frame.lettering.name, name)
+        if frame.scale >= READABLE_SITE:
+            with_site = np.array([row for row in rows if nodes.sites[row]], dtype=np.intp)
+            _paint_text(painter, frame, with_site, nodes.sites, frame.lettering.site, site, below=True)
+
+
+def _paint_text(
+    painter: QPainter,
+    frame: Frame,
+    rows: Rows,
+    texts: list[str],
+    face: Face,
+    colour: str,
+    below: bool = False,
+) -> None:
+    """Paint the name of each row in the middle of its box, or its site below the name."""
+    painter.setPen(QColor(colour))
+    painter.setFont(face.font)
+    sites = frame.contents.nodes.sites
+    boxes = frame.lines.boxes[rows]
+    middles = zip(rows.tolist(), boxes[:, 0:3:2].mean(axis=1).tolist(), boxes[:, 1:4:2].mean(axis=1).tolist(), strict=True)
+    for row, x, y in middles:
+        line = 9.0 if below else (-6.5 if sites[row] else 0.0)
+        painter.drawText(QPointF(x - face.width(texts[row]) / 2, y + line + face.rise), texts[row])

@@ -1,0 +1,60 @@
+"""Cost tags painted over the links, from the zoom at which they can be read."""
+
+from __future__ import annotations
+
+import numpy as np
+from PySide6.QtCore import QPointF, Qt
+from PySide6.QtGui import QColor, QPainter
+
+from netsketch.sheet.contents import Floats, Rows
+from netsketch.sheet.frame import Frame
+from netsketch.sheet.paint_links import pen_of
+from netsketch.sheet.paths import polylines, rectangles
+
+READABLE = 0.5
+"""The least scale at which tags are painted."""
+
+
+def paint_tags(painter: QPainter, frame: Frame) -> None:
+    """Paint the tags of the links in ``frame`` that fit."""
+    if frame.scale < READABLE:
+        return
+    tags, look = frame.tags, frame.look
+    rows = np.flatnonzero(frame.tag_fits & frame.links[tags.link])
+    painter.setPen(Qt.PenStyle.NoPen)
+    painter.setBrush(QColor(look.tag))
+    painter.drawPath(rectangles(frame.tag_boxes[rows]))
+    painter.setFont(frame.lettering.tag.font)
+    named = np.ones(len(rows), bool) if frame.marks is None else frame.marks.links[tags.link[rows]]
+    rise = frame.lettering.tag.rise
+    for colour, chosen in ((look.faded, rows[~named]), (look.ink, rows[named])):
+        painter.setPen(QColor(colour))
+        boxes = frame.tag_boxes[chosen]
+        places = zip(chosen.tolist(), (boxes[:, 0] + 4).tolist(), boxes[:, 1:4:2].mean(axis=1).tolist(), strict=True)
+        for row, left, middle in places:
+            painter.drawText(QPointF(left, middle + rise), tags.texts[row])
+    _paint_tried(painter, frame, rows)
+
+
+def _paint_tried(painter: QPainter, frame: Frame, rows: Rows) -> None:
+    """Rule off what the trial changes: a line under the tag, ending in a flag."""
+    boxes = frame.tag_boxes[rows[frame.tags.tried[rows]]]
+    if not len(boxes):
+        return
+    base = boxes[:, [0, 3, 2, 3]].reshape(-1, 2, 2)
+    painter.setPen(pen_of(frame, frame.look.ink, 1.4))
+    painter.drawPath(polylines(base))
+    paint_flags(painter, frame, boxes[:, [2, 3]], 6.0, -1)
+
+
+def paint_flags(
+    painter: QPainter, frame: Frame, corners: Floats, size: float, side: int
+) -> None:
+    """Paint the trial's mark, a filled corner, in each of ``corners`` (k, 2): right
+    corners of a box, at its top (``side`` 1) or its bottom (-1)."""
+    size = max(size, 4.0 / frame.scale)
+    corner = np.stack([corners, corners - (size, 0), corners + (0, side * size)], axis=1)
+    painter.setPen(Qt.PenStyle.NoPen)
+    painter.setBrush(QColor(frame.look.ink))
+    painter.drawPath(polylines(corner, closed=True))
+    painter.setBrush(Qt.BrushStyle.NoBrush)
