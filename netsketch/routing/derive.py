@@ -93,31 +93,31 @@ def carried(
     head: Array,
     first_parallel: Array,
     routers: int,
-    weight: Array,
     source: int,
-    row: Array,
     starts: Array,
-    masks: Array,
+    mask: Array,
     out: Array,
 ) -> None:
     """Write the next hops whose traffic the tight arc ``a`` out of ``u`` carries into
-    ``out`` (W,); ``masks`` must hold those of ``u``."""
-    words = len(out)
+    ``out`` (W,); ``mask`` (W,) holds those of ``u``."""
     first, last = indptr[source], indptr[source + 1]
     if u == source:
         out[:] = 0
         bit = starts[a - first]
         out[bit >> 6] |= np.uint64(1) << np.uint64(bit & 63)
         return
-    for i in range(words):
-        out[i] = masks[u, i]
+    for k in range(len(out)):
+        out[k] = mask[k]
     if u < routers:
         return
     # Out of a segment attached to the source: the next hop becomes the router beyond.
     for b in range(first, last):
-        if head[b] == u and weight[b] != BLOCKED and weight[b] == row[u]:
-            bit = starts[b - first]
-            out[bit >> 6] &= ~(np.uint64(1) << np.uint64(bit & 63))
+        if head[b] != u:
+            continue
+        bit = starts[b - first]
+        own = np.uint64(1) << np.uint64(bit & 63)
+        if out[bit >> 6] & own:
+            out[bit >> 6] &= ~own
             bit += 1 + first_parallel[a] - indptr[u]
             out[bit >> 6] |= np.uint64(1) << np.uint64(bit & 63)
 
@@ -128,9 +128,7 @@ def next_hop_masks(
     head: Array,
     first_parallel: Array,
     routers: int,
-    weight: Array,
     source: int,
-    row: Array,
     ptr: Array,
     arcs: Array,
     order: Array,
@@ -151,9 +149,8 @@ def next_hop_masks(
                     masks[v, k] |= masks[u, k]
                 continue
             carried(
-                arcs[j], u, indptr, head, first_parallel, routers, weight, source, row, starts,
-                masks, spare,
-            )  # fmt: skip
+                arcs[j], u, indptr, head, first_parallel, routers, source, starts, masks[u], spare
+            )
             for k in range(words):
                 masks[v, k] |= spare[k]
     return masks
@@ -165,9 +162,7 @@ def arc_masks(
     head: Array,
     first_parallel: Array,
     routers: int,
-    weight: Array,
     source: int,
-    row: Array,
     ptr: Array,
     arcs: Array,
     starts: Array,
@@ -181,8 +176,8 @@ def arc_masks(
     for u in range(len(indptr) - 1):
         for j in range(ptr[u], ptr[u + 1]):
             carried(
-                arcs[j], u, indptr, head, first_parallel, routers, weight, source, row, starts,
-                masks, out[arcs[j]],
+                arcs[j], u, indptr, head, first_parallel, routers, source, starts, masks[u],
+                out[arcs[j]],
             )  # fmt: skip
     for j in range(ptr[source], ptr[source + 1]):
         b = arcs[j]
@@ -320,15 +315,13 @@ def compare_rows(
             indptr, head, weight_old, transit_old, source, old, unreached, ptr, arcs, order
         )
         masks_old = next_hop_masks(
-            indptr, head, first_parallel, routers, weight_old, source, old, ptr, arcs, order,
-            reached, starts,
+            indptr, head, first_parallel, routers, source, ptr, arcs, order, reached, starts,
         )  # fmt: skip
         reached = tight_arcs(
             indptr, head, weight, transit, source, new, unreached, ptr, arcs, order
         )
         masks = next_hop_masks(
-            indptr, head, first_parallel, routers, weight, source, new, ptr, arcs, order,
-            reached, starts,
+            indptr, head, first_parallel, routers, source, ptr, arcs, order, reached, starts,
         )  # fmt: skip
         for t in range(vertices):
             if t == source or (old[t] == unreached and new[t] == unreached):

@@ -105,8 +105,8 @@ class Routes:
         :mod:`netsketch.routing.derive` says."""
         s, tree = self.network.structure, self._tree
         masks: Words = derive.next_hop_masks(
-            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight, self.source,
-            self.row, tree.ptr, tree.arcs, tree.order, len(tree.order), self._starts,
+            s.indptr, s.head, s.first_parallel, s.routers, self.source, tree.ptr, tree.arcs,
+            tree.order, len(tree.order), self._starts,
         )  # fmt: skip
         return masks
 
@@ -115,8 +115,8 @@ class Routes:
         """The next hops whose traffic each arc carries (A, W); all 0 off the source tree."""
         s, tree = self.network.structure, self._tree
         masks: Words = derive.arc_masks(
-            s.indptr, s.head, s.first_parallel, s.routers, self.network.weight, self.source,
-            self.row, tree.ptr, tree.arcs, self._starts, self.masks,
+            s.indptr, s.head, s.first_parallel, s.routers, self.source, tree.ptr, tree.arcs,
+            self._starts, self.masks,
         )  # fmt: skip
         return masks
 
