@@ -71,9 +71,7 @@ class Drawing:
     def frame(self) -> Frame:
         """The whole drawing at scale 1."""
         if self._frame is None:
-            self._frame = frame_of(
-                self.plan, self.reading, self.look, self.lettering, self.unit
-            )
+            self._frame = frame_of(self.plan, self.reading, self.look, self.lettering, self.unit)
         return self._frame
 
     def resting(self, scale: float, still: bool) -> Frame:
@@ -129,13 +127,12 @@ class Drawing:
 
     def _on_change(self, changes: ChangeSet) -> None:
         frame = self._frame
-        moves = [_moved(step) for step in changes.steps]
-        if frame is not None and all(moves):
+        moves = [move for move in map(_moved, changes.steps) if move is not None]
+        if frame is not None and len(moves) == len(changes.steps):
             nodes = frame.contents.nodes
-            for item in moves:
-                assert item is not None and item.x is not None and item.y is not None
-                row = nodes.row[item.id]
-                nodes.x[row], nodes.y[row] = item.x * self.unit, item.y * self.unit
+            for key, x, y in moves:
+                row = nodes.row[key]
+                nodes.x[row], nodes.y[row] = x * self.unit, y * self.unit
             self._frame = relaid(frame)
         else:
             self._frame = None
@@ -143,8 +140,8 @@ class Drawing:
         self._touch()
 
 
-def _moved(step: Step) -> Router | Segment | None:
-    """Return the node as it is now, if all that the step does is move it."""
+def _moved(step: Step) -> tuple[str, float, float] | None:
+    """Return a node's id and new place, if all that the step does is move it."""
     if not isinstance(step, Change) or not isinstance(step.new, Router | Segment):
         return None
     old, new = step.old, step.new
@@ -152,4 +149,4 @@ def _moved(step: Step) -> Router | Segment | None:
         return None
     same = (old.name, old.site, old.up) == (new.name, new.site, new.up)
     same &= getattr(old, "drained", False) == getattr(new, "drained", False)
-    return new if same else None
+    return (new.id, new.x, new.y) if same else None

@@ -1,5 +1,7 @@
 """Writing on the sheet: a line to type in over the name or the cost it changes."""
 
+# ruff: noqa: N802  (Qt names the event handlers)
+
 from __future__ import annotations
 
 from collections.abc import Callable

@@ -6,7 +6,6 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 from PySide6.QtCore import QRectF
-from PySide6.QtGui import QColor
 
 from netsketch.model import Plan
 from netsketch.readings.reading import Reading
@@ -49,7 +48,7 @@ class Frame:
 
     def within(self, area: QRectF) -> Frame:
         """Return this frame with only what can touch ``area`` (sheet units)."""
-        left, top, right, bottom = area.getCoords()
+        left, top, right, bottom = corners(area)
         room = MARGIN + 6 / self.scale
         low = np.minimum(self.lines.boxes[:, :2], self.lines.bars[:, :2]) - room
         high = np.maximum(self.lines.boxes[:, 2:], self.lines.bars[:, 2:]) + room
@@ -111,8 +110,6 @@ def with_reading(frame: Frame, reading: Reading | None, look: Look) -> Frame:
     return replace(frame, tags=tags, tag_boxes=boxes, tag_fits=fits, marks=marks, look=look)
 
 
-def mixed(one: str, other: str, share: float) -> QColor:
-    """Return ``share`` of the first colour with the rest of the other."""
-    a, b = QColor(one), QColor(other)
-    parts = zip(a.getRgb()[:3], b.getRgb()[:3], strict=True)
-    return QColor(*(round(x * share + y * (1 - share)) for x, y in parts))
+def corners(area: QRectF) -> tuple[float, float, float, float]:
+    """Return left, top, right and bottom of a rectangle."""
+    return area.left(), area.top(), area.right(), area.bottom()

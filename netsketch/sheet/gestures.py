@@ -12,6 +12,7 @@ from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QColor, QPainter
 
 from netsketch.model import Segment, edits
+from netsketch.sheet.contents import Floats
 from netsketch.sheet.frame import Frame
 from netsketch.sheet.hits import link_at, node_at, rows_in
 from netsketch.sheet.overlay import paint_hover, paint_rubber_line
@@ -102,9 +103,9 @@ class Grab(Gesture):
         self.sheet.drawing.shift(self._rows, self._moved())
         self.sheet.update()
 
-    def _moved(self) -> np.ndarray:
+    def _moved(self) -> Floats:
         way = (self.at - self.start) / self.sheet.view.scale
-        return self._places + (way.x(), way.y())
+        return np.asarray(self._places + np.array([way.x(), way.y()]))
 
     def end(self, at: QPointF) -> bool:
         self.at = at

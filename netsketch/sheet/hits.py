@@ -6,7 +6,7 @@ import numpy as np
 from PySide6.QtCore import QPointF, QRectF
 
 from netsketch.sheet.contents import Floats, Rows
-from netsketch.sheet.frame import Frame
+from netsketch.sheet.frame import Frame, corners
 from netsketch.sheet.paint_tags import READABLE
 
 _NEAR = 5.0
@@ -53,7 +53,7 @@ def distances(points: Floats, point: Floats) -> Floats:
 
 def rows_in(frame: Frame, area: QRectF) -> tuple[Rows, Rows]:
     """Return the nodes that ``area`` touches, and the links that lie wholly in it."""
-    left, top, right, bottom = area.normalized().getCoords()
+    left, top, right, bottom = corners(area.normalized())
     touched = np.zeros(len(frame.nodes), dtype=bool)
     for boxes in (frame.lines.boxes, frame.lines.bars):
         touched |= (

@@ -58,7 +58,9 @@ def _nudge(sheet: Sheet, way: tuple[int, int], step: float) -> None:
     places = {}
     for key in sheet.selected_nodes:
         row = nodes.row[key]
-        places[key] = sheet.drawing.to_plan(nodes.x[row] + way[0] * step, nodes.y[row] + way[1] * step)
+        places[key] = sheet.drawing.to_plan(
+            nodes.x[row] + way[0] * step, nodes.y[row] + way[1] * step
+        )
     sheet.propose(edits.move(sheet.drawing.plan, places, merge=f"nudge {' '.join(places)}"))
 
 

@@ -57,7 +57,8 @@ def lines_of(contents: Contents) -> Lines:
         along=along,
         across=np.stack([-along[:, 1], along[:, 0]], axis=1),
         length=length,
-        bent=(points[:, 0] != points[:, 1]).any(axis=1) | (points[:, 2] != points[:, 3]).any(axis=1),
+        bent=(points[:, 0] != points[:, 1]).any(axis=1)
+        | (points[:, 2] != points[:, 3]).any(axis=1),
         extents=np.concatenate([points.min(axis=1), points.max(axis=1)], axis=1),
     )
 

@@ -29,7 +29,7 @@ def paint_selection(
     rows = np.array(list(nodes), dtype=np.intp)
     if len(rows):
         grown = 6.0
-        boxes = np.concatenate([frame.lines.bars[rows]]) + (-grown, -grown, grown, grown)
+        boxes = frame.lines.bars[rows] + np.array([-grown, -grown, grown, grown])
         painter.setPen(pen_of(frame, frame.look.ink, 1.0))
         painter.drawPath(rectangles(boxes))
         _paint_handles(painter, frame, boxes[:, [0, 1, 2, 1, 0, 3, 2, 3]].reshape(-1, 2))
@@ -49,8 +49,10 @@ def _paint_handles(painter: QPainter, frame: Frame, places: Floats) -> None:
 
 def paint_edges(painter: QPainter, frame: Frame, rows: np.ndarray) -> None:
     """Paint a thin line along both sides of links."""
-    reach = 0.0 if frame.marks is None else frame.marks.reach[rows]
-    aside = (np.maximum(reach, 1.5) + max(3.0, 3.0 / frame.scale))[:, None] * frame.lines.across[rows]
+    reach = np.zeros(len(rows)) if frame.marks is None else frame.marks.reach[rows]
+    aside = (np.maximum(reach, 1.5) + max(3.0, 3.0 / frame.scale))[:, None] * frame.lines.across[
+        rows
+    ]
     points = frame.lines.points[rows]
     painter.setBrush(_NO_BRUSH)
     painter.setPen(pen_of(frame, frame.look.ink, 1.1))
@@ -70,7 +72,9 @@ def paint_hover(painter: QPainter, frame: Frame, node: int | None, link: int | N
         painter.setPen(Qt.PenStyle.NoPen)
         painter.setBrush(halo)
         left, top, right, bottom = frame.lines.bars[node].tolist()
-        painter.drawRoundedRect(QRectF(left - 5, top - 5, right - left + 10, bottom - top + 10), 10, 10)
+        painter.drawRoundedRect(
+            QRectF(left - 5, top - 5, right - left + 10, bottom - top + 10), 10, 10
+        )
     elif link is not None:
         pen = pen_of(frame, halo, 12.0, 10.0)
         painter.setPen(pen)

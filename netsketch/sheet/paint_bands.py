@@ -59,17 +59,17 @@ def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) ->
         _fill_plate(painter, frame, row, cells)
         return
     outline = QRectF(x, bottom + _BELOW, sum(needs) + spare * len(cells), BAND_HEIGHT)
+    painter.fillRect(outline.adjusted(-1, -_BELOW + 1, 1, 1), QColor(frame.look.paper))
     for (text, ground, ink), need in zip(cells, needs, strict=True):
         cell = QRectF(x, outline.top(), need + spare, BAND_HEIGHT)
-        painter.fillRect(cell, QColor(ground or frame.look.paper))
+        painter.setPen(_NO_PEN if ground else pen_of(frame, frame.look.ink, 1.2))
+        painter.setBrush(QColor(ground or frame.look.paper))
+        painter.drawRoundedRect(cell.adjusted(0.5, 0, -0.5, 0), 3, 3)
         if frame.scale >= READABLE:
             painter.setPen(QColor(ink))
             start = cell.center().x() - face.width(text) / 2
             painter.drawText(QPointF(start, cell.center().y() + face.rise), text)
         x += need + spare
-    if not cells[0][1]:
-        painter.setPen(pen_of(frame, frame.look.ink, 1.2))
-        painter.drawRect(outline)
 
 
 def _fill_plate(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) -> None:
@@ -79,4 +79,3 @@ def _fill_plate(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) ->
     for place, (_, ground, _) in enumerate(cells):
         if ground:
             painter.fillRect(QRectF(left + place * step, top, step, bottom - top), QColor(ground))
-

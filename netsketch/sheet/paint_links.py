@@ -114,8 +114,10 @@ def _paint_chevrons(
 def chevrons(frame: Frame, rows: Rows, points: Floats, width: float) -> Floats:
     """Return arrowheads (k, 4, 2) on the lines ``points``, as many as their length asks."""
     length = frame.lines.length[rows]
-    size = np.clip(3.4 + 0.9 * width, 6.5, 10.0) / min(1.0, max(frame.scale * 1.6, 0.2))
-    count = np.select([length < 2.4 * size, length < 90, length < 230, length < 420], [0, 1, 2, 4], 6)
+    size = min(max(8.0 + width, 10.0), 15.0) / min(1.0, max(frame.scale * 1.5, 0.2))
+    count = np.select(
+        [length < 2.4 * size, length < 90, length < 230, length < 420], [0, 1, 2, 4], 6
+    )
     along = points[:, 2] - points[:, 1]
     along /= np.maximum(np.hypot(along[:, 0], along[:, 1]), 1e-9)[:, None]
     across = np.stack([-along[:, 1], along[:, 0]], axis=1)
@@ -124,8 +126,10 @@ def chevrons(frame: Frame, rows: Rows, points: Floats, width: float) -> Floats:
         chosen = count == number
         for place in _places(int(number)):
             tip = points[chosen, 1] + along[chosen] * (length[chosen] * place + size / 2)[:, None]
-            back, wing = along[chosen] * size, across[chosen] * size * 0.62
-            found.append(np.stack([tip, tip - back + wing, tip - back * 0.7, tip - back - wing], axis=1))
+            back, wing = along[chosen] * size, across[chosen] * size * 0.56
+            found.append(
+                np.stack([tip, tip - back + wing, tip - back * 0.72, tip - back - wing], axis=1)
+            )
     return np.concatenate(found) if found else np.empty((0, 4, 2))
 
 

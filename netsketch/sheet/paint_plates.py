@@ -36,7 +36,9 @@ def paint_plates(painter: QPainter, frame: Frame) -> None:
     _paint_names(painter, frame, focus, faded)
     tried = np.flatnonzero(frame.nodes & frame.contents.nodes.tried)
     if len(tried):
-        paint_flags(painter, frame, frame.lines.boxes[tried][:, [2, 1]] + (3, -3), 10.0, 1)
+        paint_flags(
+            painter, frame, frame.lines.boxes[tried][:, [2, 1]] + np.array([3.0, -3.0]), 10.0, 1
+        )
 
 
 def _with_role(frame: Frame, role: str) -> Flags:
@@ -64,7 +66,9 @@ def _paint_rail_breaks(painter: QPainter, frame: Frame, rows: Rows) -> None:
     """Break a rail that is down as a link is broken: a gap, a bar on each side."""
     for left, top, right, bottom in frame.lines.bars[rows]:
         middle = (left + right) / 2
-        painter.fillRect(QRectF(middle - 10, top - 1, 20, bottom - top + 2), QColor(frame.look.paper))
+        painter.fillRect(
+            QRectF(middle - 10, top - 1, 20, bottom - top + 2), QColor(frame.look.paper)
+        )
         painter.setPen(pen_of(frame, frame.look.ink, 2.2, 1.4))
         for x in (middle - 10, middle + 10):
             painter.drawLine(QPointF(x, top - 6), QPointF(x, bottom + 6))
@@ -73,7 +77,10 @@ def _paint_rail_breaks(painter: QPainter, frame: Frame, rows: Rows) -> None:
 def _paint_shapes(painter: QPainter, frame: Frame, mask: Flags, fill: str, edge: str) -> None:
     """Paint plates: outlined, dashed when drained, broken when down."""
     nodes = frame.contents.nodes
-    for special, dashed in ((~nodes.drained & ~nodes.down, False), (nodes.drained & ~nodes.down, True)):
+    for special, dashed in (
+        (~nodes.drained & ~nodes.down, False),
+        (nodes.drained & ~nodes.down, True),
+    ):
         rows = np.flatnonzero(mask & special)
         if len(rows):
             pen = pen_of(frame, edge if not dashed or fill != edge else frame.look.paper, 1.5)
@@ -88,7 +95,7 @@ def _paint_shapes(painter: QPainter, frame: Frame, mask: Flags, fill: str, edge:
 
 def _outlines(frame: Frame, rows: Rows, grown: float = 0.0) -> QPainterPath:
     """Return the plates' outlines; square corners where round ones could not be seen."""
-    boxes = frame.lines.boxes[rows] + (-grown, -grown, grown, grown)
+    boxes = frame.lines.boxes[rows] + np.array([-grown, -grown, grown, grown])
     if frame.scale < READABLE_NAME:
         return rectangles(boxes)
     path = QPainterPath()
@@ -112,9 +119,9 @@ def _paint_down(painter: QPainter, frame: Frame, rows: Rows, fill: str, edge: st
         gap = np.stack([np.stack([middle - 8, y], 1), np.stack([middle + 8, y], 1)], axis=1)
         painter.setPen(pen_of(frame, look.paper, 4.0))
         painter.drawPath(polylines(gap))
-        ends = gap.reshape(-1, 2)
+        ends, wing = gap.reshape(-1, 2), np.array([0.0, 5.0])
         painter.setPen(pen_of(frame, look.ink, 2.2, 1.4))
-        painter.drawPath(polylines(np.stack([ends - (0, 5), ends + (0, 5)], axis=1)))
+        painter.drawPath(polylines(np.stack([ends - wing, ends + wing], axis=1)))
 
 
 def _paint_hatching(painter: QPainter, frame: Frame, mask: Flags) -> None:
@@ -155,7 +162,9 @@ def _paint_names(painter: QPainter, frame: Frame, focus: Flags, faded: Flags) ->
         _paint_text(painter, frame, rows, nodes.names, frame.lettering.name, name)
         if frame.scale >= READABLE_SITE:
             with_site = np.array([row for row in rows if nodes.sites[row]], dtype=np.intp)
-            _paint_text(painter, frame, with_site, nodes.sites, frame.lettering.site, site, below=True)
+            _paint_text(
+                painter, frame, with_site, nodes.sites, frame.lettering.site, site, below=True
+            )
 
 
 def _paint_text(
@@ -172,7 +181,12 @@ def _paint_text(
     painter.setFont(face.font)
     sites = frame.contents.nodes.sites
     boxes = frame.lines.boxes[rows]
-    middles = zip(rows.tolist(), boxes[:, 0:3:2].mean(axis=1).tolist(), boxes[:, 1:4:2].mean(axis=1).tolist(), strict=True)
+    middles = zip(
+        rows.tolist(),
+        boxes[:, 0:3:2].mean(axis=1).tolist(),
+        boxes[:, 1:4:2].mean(axis=1).tolist(),
+        strict=True,
+    )
     for row, x, y in middles:
         line = 9.0 if below else (-6.5 if sites[row] else 0.0)
         painter.drawText(QPointF(x - face.width(texts[row]) / 2, y + line + face.rise), texts[row])

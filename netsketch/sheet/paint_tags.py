@@ -30,7 +30,12 @@ def paint_tags(painter: QPainter, frame: Frame) -> None:
     for colour, chosen in ((look.faded, rows[~named]), (look.ink, rows[named])):
         painter.setPen(QColor(colour))
         boxes = frame.tag_boxes[chosen]
-        places = zip(chosen.tolist(), (boxes[:, 0] + 4).tolist(), boxes[:, 1:4:2].mean(axis=1).tolist(), strict=True)
+        places = zip(
+            chosen.tolist(),
+            (boxes[:, 0] + 4).tolist(),
+            boxes[:, 1:4:2].mean(axis=1).tolist(),
+            strict=True,
+        )
         for row, left, middle in places:
             painter.drawText(QPointF(left, middle + rise), tags.texts[row])
     _paint_tried(painter, frame, rows)
@@ -47,13 +52,12 @@ def _paint_tried(painter: QPainter, frame: Frame, rows: Rows) -> None:
     paint_flags(painter, frame, boxes[:, [2, 3]], 6.0, -1)
 
 
-def paint_flags(
-    painter: QPainter, frame: Frame, corners: Floats, size: float, side: int
-) -> None:
+def paint_flags(painter: QPainter, frame: Frame, corners: Floats, size: float, side: int) -> None:
     """Paint the trial's mark, a filled corner, in each of ``corners`` (k, 2): right
     corners of a box, at its top (``side`` 1) or its bottom (-1)."""
     size = max(size, 4.0 / frame.scale)
-    corner = np.stack([corners, corners - (size, 0), corners + (0, side * size)], axis=1)
+    legs = np.array([[0.0, 0.0], [-size, 0.0], [0.0, side * size]])
+    corner = corners[:, None, :] + legs
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(QColor(frame.look.ink))
     painter.drawPath(polylines(corner, closed=True))

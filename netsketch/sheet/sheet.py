@@ -1,5 +1,7 @@
 """The sheet: the widget on which a plan is drawn, read and edited."""
 
+# ruff: noqa: N802  (Qt names the event handlers)
+
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
@@ -322,14 +324,13 @@ class Sheet(QWidget):
         picture = self._resting.picture(
             self.drawing, self.view, self.size(), self.devicePixelRatioF(), still
         )
-        painter = QPainter(self)
-        painter.drawPixmap(0, 0, picture)
-        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        if not self.drawing.plan.nodes:
-            overlay.paint_begin(painter, self.look, QRectF(self.rect()))
-        painter.setTransform(self.view.transform(), True)
-        self._paint_overlay(painter)
-        painter.end()
+        with QPainter(self) as painter:
+            painter.drawPixmap(0, 0, picture)
+            painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+            if not self.drawing.plan.nodes:
+                overlay.paint_begin(painter, self.look, QRectF(self.rect()))
+            painter.setTransform(self.view.transform(), True)
+            self._paint_overlay(painter)
 
     def _paint_overlay(self, painter: QPainter) -> None:
         frame = self.frame
@@ -402,10 +403,12 @@ class Sheet(QWidget):
         event.accept()
 
     def event(self, event: QEvent) -> bool:
-        if isinstance(event, QNativeGestureEvent):
-            if event.gestureType() == Qt.NativeGestureType.ZoomNativeGesture:
-                self.show_view(self.view.zoomed(1 + event.value(), event.position()))
-                return True
+        if (
+            isinstance(event, QNativeGestureEvent)
+            and event.gestureType() == Qt.NativeGestureType.ZoomNativeGesture
+        ):
+            self.show_view(self.view.zoomed(1 + event.value(), event.position()))
+            return True
         return super().event(event)
 
     def contextMenuEvent(self, event: QContextMenuEvent) -> None:

@@ -63,9 +63,7 @@ def _costs(contents: Contents, row: int) -> Iterator[tuple[int, str, bool]]:
     old, old_back = links.planned.get(row, (cost, back))
     if segment[links.tail[row]]:
         yield _MIDDLE, _changed(old_back, back), old_back != back
-    elif segment[links.head[row]]:
-        yield _MIDDLE, _changed(old, cost), old != cost
-    elif cost == back and old == old_back:
+    elif segment[links.head[row]] or (cost == back and old == old_back):
         yield _MIDDLE, _changed(old, cost), old != cost
     else:
         yield _AT_TAIL, _changed(old, cost), old != cost
