@@ -9,7 +9,7 @@ import msgspec
 
 from netsketch.formats import limits, records
 from netsketch.formats.errors import FormatError
-from netsketch.formats.records import DemandRecord, EdgeRecord, GroupRecord, Place
+from netsketch.formats.records import DemandRecord, EdgeRecord, GroupRecord, Place, with_extra
 from netsketch.model import (
     Add,
     ChangeTrial,
@@ -36,23 +36,14 @@ GRAPH_KEYS: Final = (*records.SETTINGS_KEYS, "groups", "demands", "trial")
 class Places(msgspec.Struct, frozen=True):
     """How places are named: by position in a native file, by ends in an import."""
 
-    node: Place
-    link: Place
-    group: Place = lambda index, raw: f"groups[{index}]{_called('group', raw, 'id')}"
+    node: Place = lambda index, raw: f"nodes[{index}]"
+    link: Place = lambda index, raw: f"edges[{index}]"
+    group: Place = lambda index, raw: f"groups[{index}]"
     demand: Place = lambda index, raw: f"demands[{index}]"
     trial: Place = lambda index, raw: f"trial[{index}]"
 
 
-def _called(kind: str, raw: Any, key: str) -> str:
-    """Return the words for a thing by its id, as far as it has one."""
-    found = raw.get(key) if isinstance(raw, dict) else None
-    return f" ({kind} {quoted(found)})" if isinstance(found, str) and found else ""
-
-
-NATIVE_PLACES: Final = Places(
-    node=lambda index, raw: f"nodes[{index}]{_called('node', raw, 'id')}",
-    link=lambda index, raw: f"edges[{index}]{_called('link', raw, 'key')}",
-)
+NATIVE_PLACES: Final = Places()
 
 
 # -- to a plan --------------------------------------------------------------------------
@@ -114,8 +105,7 @@ class _Filling:
                 try:
                     self.plan.apply(Edit("load", (Add(item, index),)))
                 except PlanError as error:
-                    where = place(index, raw[index]).partition(" (")[0]
-                    raise FormatError(self.file, where, str(error)) from error
+                    raise FormatError(self.file, place(index, raw[index]), str(error)) from error
             raise
 
     def lay_trial(self, trial: Trial) -> None:
@@ -238,8 +228,8 @@ def from_plan(plan: Plan) -> dict[str, Any]:
     if plan.trial:
         graph["trial"] = [msgspec.to_builtins(change) for change in plan.trial]
     found = {
-        "graph": records.with_extra(graph, plan.settings.extra),
-        "nodes": [records.node_object(node) for node in plan.nodes],
-        "edges": [records.edge_object(link) for link in plan.links],
+        "graph": with_extra(graph, plan.settings.extra),
+        "nodes": [with_extra(records.node_object(node), node.extra) for node in plan.nodes],
+        "edges": [with_extra(records.edge_object(link), link.extra) for link in plan.links],
     }
-    return records.with_extra(found, plan.settings.top_extra)
+    return with_extra(found, plan.settings.top_extra)

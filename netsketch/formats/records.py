@@ -93,7 +93,14 @@ def convert(raw: Any, kind: type[T], section: str, file: str, place: Place) -> T
             raise FormatError(file, section, _in_words(str(error))) from error
         what, index, path = found["what"], int(found["index"]), found["path"].lstrip(".")
         reason = ": ".join(part for part in (path, _in_words(what)) if part)
-        raise FormatError(file, place(index, raw[index]), reason) from error
+        raise FormatError(file, place(index, raw[index]) + called(raw[index]), reason) from error
+
+
+def called(raw: Any) -> str:
+    """Return the id of an object in brackets, as far as it has one."""
+    found = (raw.get("key") or raw.get("id")) if isinstance(raw, dict) else None
+    what = "link " if isinstance(raw, dict) and "key" in raw else ""
+    return f" ({what}{quoted(found)})" if isinstance(found, str) else ""
 
 
 _AT: Final = re.compile(r"(?P<what>.*) - at `\$\[(?P<index>\d+)\](?P<path>.*)`", re.DOTALL)
@@ -136,7 +143,7 @@ def settings_object(settings: Settings) -> dict[str, Any]:
 
 
 def node_object(node: Router | Segment) -> dict[str, Any]:
-    """Return a router or segment, without what is as usual."""
+    """Return a router or segment, without what is as usual and without its extra keys."""
     found: dict[str, Any] = {
         "id": node.id,
         "kind": "router" if isinstance(node, Router) else "segment",
@@ -151,11 +158,11 @@ def node_object(node: Router | Segment) -> dict[str, Any]:
         found["up"] = False
     if isinstance(node, Router) and node.drained:
         found["drained"] = True
-    return with_extra(found, node.extra)
+    return found
 
 
 def edge_object(link: Link) -> dict[str, Any]:
-    """Return a link, without what is as usual."""
+    """Return a link, without what is as usual and without its extra keys."""
     found: dict[str, Any] = {
         "source": link.source,
         "target": link.target,
@@ -172,7 +179,7 @@ def edge_object(link: Link) -> dict[str, Any]:
         found["up"] = False
     if link.groups:
         found["groups"] = list(link.groups)
-    return with_extra(found, link.extra)
+    return found
 
 
 def group_object(group: SharedRiskGroup) -> dict[str, Any]:

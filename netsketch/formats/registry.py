@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import re
 import stat
+from collections.abc import Callable
 from pathlib import Path
 from typing import Final, NamedTuple
 
-from netsketch.formats import atomic, limits, native, nodelink, strict_json
+from netsketch.formats import atomic, gml, graphml, limits, native, nodelink, strict_json
 from netsketch.formats.errors import FormatError, Loaded
 from netsketch.model import Plan
 
@@ -23,6 +25,8 @@ class FormatName(NamedTuple):
 FORMATS: Final = (
     FormatName(native.NAME, (".netsketch.json", ".json"), True, True),
     FormatName(nodelink.NAME, (".json",), True, False),
+    FormatName(graphml.NAME, (".graphml", ".xml"), True, True),
+    FormatName(gml.NAME, (".gml",), True, True),
 )
 
 
@@ -31,13 +35,19 @@ def names() -> list[FormatName]:
     return list(FORMATS)
 
 
+# -- reading ----------------------------------------------------------------------------
+
+
 def read(path: Path) -> Loaded:
     """Return the plan in the file at ``path``, in whatever format it is.
 
     The suffix decides; where it is unknown, the content. Raises :class:`FormatError`.
     """
     data = _bytes_of(path)
-    return _read_json(data, str(path))
+    reader = _READERS.get(path.suffix.lower()) or _reader_for(data)
+    if reader is None:
+        raise FormatError(str(path), "", f"not a file that can be read: {_known(reading=True)}")
+    return reader(data, str(path))
 
 
 def _read_json(data: bytes, file: str) -> Loaded:
@@ -47,20 +57,51 @@ def _read_json(data: bytes, file: str) -> Loaded:
     return nodelink.from_parsed(raw, file)
 
 
+_READERS: Final[dict[str, Callable[[bytes, str], Loaded]]] = {
+    ".json": _read_json,
+    ".graphml": graphml.loads,
+    ".xml": graphml.loads,
+    ".gml": gml.loads,
+}
+
+
+def _reader_for(data: bytes) -> Callable[[bytes, str], Loaded] | None:
+    """Return the reader that the first bytes ask for."""
+    start = data.removeprefix(b"\xef\xbb\xbf").lstrip()
+    if start.startswith(b"{"):
+        return _read_json
+    if start.startswith(b"<"):
+        return graphml.loads
+    return gml.loads if re.search(rb"^\s*graph\s*\[", start, re.MULTILINE) else None
+
+
 def _bytes_of(path: Path) -> bytes:
     """Return the file's bytes; raise :class:`FormatError` when it cannot be read."""
+    file = str(path)
     try:
-        found = path.stat()
-        if stat.S_ISDIR(found.st_mode):
-            raise FormatError(str(path), "", "it is a folder")
-        if not stat.S_ISREG(found.st_mode):
-            raise FormatError(str(path), "", "it is not an ordinary file")
-        limits.check_size(found.st_size, str(path))
-        data = path.read_bytes()
-    except OSError as error:
-        reason = error.strerror or str(error)
-        raise FormatError(str(path), "", f"cannot be read: {reason}") from error
+        kind, data = _kind_and_bytes(path)
+    except (OSError, ValueError) as error:
+        reason = getattr(error, "strerror", None) or str(error)
+        raise FormatError(file, "", f"cannot be read: {reason}") from error
+    if stat.S_ISDIR(kind):
+        raise FormatError(file, "", "it is a folder")
+    if not stat.S_ISREG(kind):
+        raise FormatError(file, "", "it is not an ordinary file")
+    limits.check_size(len(data), file)
     return data
+
+
+def _kind_and_bytes(path: Path) -> tuple[int, bytes]:
+    """Return the kind of file and, when it is an ordinary one, its bytes: of a file that
+    is too large only so many that this shows."""
+    kind = path.stat().st_mode
+    if not stat.S_ISREG(kind):
+        return kind, b""
+    with path.open("rb") as file:
+        return kind, file.read(limits.FILE_BYTES + 1)
+
+
+# -- writing ----------------------------------------------------------------------------
 
 
 def write(plan: Plan, path: Path, original: bytes | None = None) -> list[str]:
@@ -70,14 +111,31 @@ def write(plan: Plan, path: Path, original: bytes | None = None) -> list[str]:
     unchanged when they still say the same. Returns notes on what the format could not
     carry. Raises :class:`FormatError`; a file that was there is then untouched.
     """
-    data = native.dumps(plan) if original is None else _native_bytes(plan, original)
+    suffix = path.suffix.lower()
+    notes: list[str] = []
+    if suffix == ".json":
+        data = _native_bytes(plan, original)
+    elif suffix in (".graphml", ".xml"):
+        data, notes = graphml.dumps(plan, str(path))
+    elif suffix == ".gml":
+        data, notes = gml.dumps(plan, str(path))
+    else:
+        raise FormatError(str(path), "", f"not a format that can be written: {_known()}")
     atomic.write_bytes(path, data)
-    return []
+    return notes
 
 
-def _native_bytes(plan: Plan, original: bytes) -> bytes:
+def _native_bytes(plan: Plan, original: bytes | None) -> bytes:
+    if original is None:
+        return native.dumps(plan)
     try:
-        unchanged = native.loads(original, "").plan == plan
-    except FormatError:
-        unchanged = False
-    return original if unchanged else native.dumps(plan)
+        same = native.loads(original, "").plan == plan
+    except FormatError:  # bytes that are no native file do not say the same
+        same = False
+    return original if same else native.dumps(plan)
+
+
+def _known(reading: bool = False) -> str:
+    """Return the suffixes there are, for a refusal."""
+    found = [f for f in FORMATS if (f.can_read if reading else f.can_write)]
+    return "use " + ", ".join(dict.fromkeys(f.suffixes[0] for f in found))
