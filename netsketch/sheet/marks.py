@@ -124,4 +124,4 @@ def _strokes_of(travel: Travel, reading: Reading, look: Look) -> Iterator[Stroke
 def _load_stroke(share: float) -> Stroke:
     held = min(max(share, 0.0), 1.0)
     step = round(held * _RAMP_STEPS) / _RAMP_STEPS
-    return Stroke(cividis(step), round(1.6 + 6.4 * step, 1), edge=2.2 if share > 1 else 0.8)
+    return Stroke(cividis(step), round(1.6 + 5.4 * step, 1), edge=2.2 if share > 1 else 0.8)

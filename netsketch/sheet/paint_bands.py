@@ -12,6 +12,7 @@ from netsketch.sheet.paint_links import pen_of
 
 BAND_HEIGHT = 14.0
 _BELOW = 3.0
+_SECOND_OUTLINE = 4.0
 READABLE, VISIBLE = 0.5, 0.3
 """The least scales at which band texts and bands are painted; below, the colour fills
 the whole plate."""
@@ -30,7 +31,7 @@ def paint_bands(painter: QPainter, frame: Frame) -> None:
         if frame.nodes[row]:
             cells = _cells(frame, frame.marks, mark)
             if cells:
-                _paint_band(painter, frame, row, cells)
+                _paint_band(painter, frame, row, cells, mark.moved)
 
 
 def _cells(frame: Frame, marks: Marks, mark: PlateMark) -> list[Cell]:
@@ -48,7 +49,7 @@ def _cells(frame: Frame, marks: Marks, mark: PlateMark) -> list[Cell]:
     return cells
 
 
-def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) -> None:
+def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell], moved: bool) -> None:
     """Paint the cells side by side under the plate, wider than it where they need be."""
     face = frame.lettering.band
     needs = [face.width(text) + 8 for text, _, _ in cells]
@@ -58,6 +59,7 @@ def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) ->
     if frame.scale < VISIBLE:
         _fill_plate(painter, frame, row, cells)
         return
+    bottom += _SECOND_OUTLINE if moved else 0.0
     outline = QRectF(x, bottom + _BELOW, sum(needs) + spare * len(cells), BAND_HEIGHT)
     painter.fillRect(outline.adjusted(-1, -_BELOW + 1, 1, 1), QColor(frame.look.paper))
     for (text, ground, ink), need in zip(cells, needs, strict=True):

@@ -63,7 +63,7 @@ def _halves(frame: Frame, rows: Rows, points: Floats) -> Floats:
 def _paint_lines(painter: QPainter, frame: Frame) -> None:
     """Paint what carries no strand: ink on the bare sheet, faded under a reading."""
     links, nodes, look = frame.contents.links, frame.contents.nodes, frame.look
-    idle = links.down | nodes.down[links.tail] | nodes.down[links.head]
+    idle = nodes.down[links.tail] | nodes.down[links.head]
     shown = frame.links
     faded = idle
     if frame.marks is not None:
@@ -104,32 +104,40 @@ def _paint_chevrons(
     arrows = chevrons(frame, rows, points, max(stroke.width, 1.6 / frame.scale))
     if not len(arrows):
         return
+    path = polylines(arrows, closed=True)
     edge = frame.look.ink if stroke.edge else frame.look.paper
-    painter.setPen(pen_of(frame, stroke.colour if stroke.hollow else edge, 1.2, 0.6))
-    painter.setBrush(QColor(frame.look.paper if stroke.hollow else stroke.colour))
-    painter.drawPath(polylines(arrows, closed=True))
-    painter.setBrush(_NO_BRUSH)
+    painter.strokePath(path, pen_of(frame, edge, 2.4, 1.4))
+    painter.fillPath(path, QColor(frame.look.paper if stroke.hollow else stroke.colour))
+    if stroke.hollow:
+        painter.strokePath(path, pen_of(frame, stroke.colour, 1.5))
 
 
 def chevrons(frame: Frame, rows: Rows, points: Floats, width: float) -> Floats:
-    """Return arrowheads (k, 4, 2) on the lines ``points``, as many as their length asks."""
+    """Return arrowheads (k, 4, 2) on the lines ``points``, as many as their length asks.
+
+    Lines beside a link's middle carry theirs a little farther on, so that two directions
+    of travel do not cover each other's.
+    """
     length = frame.lines.length[rows]
-    size = min(max(8.0 + width, 10.0), 15.0) / min(1.0, max(frame.scale * 1.5, 0.2))
+    size = min(max(9.0 + width, 11.0), 16.0) / min(1.0, max(frame.scale * 1.5, 0.2))
     count = np.select(
         [length < 2.4 * size, length < 90, length < 230, length < 420], [0, 1, 2, 4], 6
     )
     along = points[:, 2] - points[:, 1]
     along /= np.maximum(np.hypot(along[:, 0], along[:, 1]), 1e-9)[:, None]
     across = np.stack([-along[:, 1], along[:, 0]], axis=1)
+    middle = frame.lines.points[rows, 1:3].mean(axis=1)
+    beside = ((points[:, 1:3].mean(axis=1) - middle) * across).sum(axis=1)
+    further = np.sign(np.round(beside, 2)) * 0.7 * size + size / 2
     found = []
     for number in np.unique(count[count > 0]):
         chosen = count == number
         for place in _places(int(number)):
-            tip = points[chosen, 1] + along[chosen] * (length[chosen] * place + size / 2)[:, None]
-            back, wing = along[chosen] * size, across[chosen] * size * 0.56
-            found.append(
-                np.stack([tip, tip - back + wing, tip - back * 0.72, tip - back - wing], axis=1)
-            )
+            at = length[chosen] * place + further[chosen]
+            tip = points[chosen, 1] + along[chosen] * at[:, None]
+            back, wing = along[chosen] * size, across[chosen] * size * 0.54
+            corners = [tip, tip - back + wing, tip - back * 0.78, tip - back - wing]
+            found.append(np.stack(corners, axis=1))
     return np.concatenate(found) if found else np.empty((0, 4, 2))
 
 

@@ -24,13 +24,16 @@ def paint_plates(painter: QPainter, frame: Frame) -> None:
     """Paint the plates and rails of ``frame``."""
     _paint_bars(painter, frame)
     focus = _with_role(frame, "focus")
-    cut_off = _with_role(frame, "cut off")
+    cut_off, target = _with_role(frame, "cut off"), _with_role(frame, "target")
     faded = frame.faded_nodes()
     plates = frame.nodes & ~frame.contents.nodes.segment
     look = frame.look
     _paint_shapes(painter, frame, plates & ~faded & ~focus, look.plate, look.ink)
     _paint_shapes(painter, frame, plates & faded, look.plate, look.hairline)
     _paint_shapes(painter, frame, frame.nodes & focus, look.ink, look.ink)
+    painter.setPen(pen_of(frame, look.ink, 3.4, 2.0))
+    painter.setBrush(_NO_BRUSH)
+    painter.drawPath(_outlines(frame, np.flatnonzero(frame.nodes & target)))
     _paint_hatching(painter, frame, frame.nodes & cut_off)
     _paint_second_outlines(painter, frame)
     _paint_names(painter, frame, focus, faded)
@@ -135,6 +138,8 @@ def _paint_hatching(painter: QPainter, frame: Frame, mask: Flags) -> None:
     painter.setBrush(_NO_BRUSH)
     painter.setPen(pen_of(frame, frame.look.ink, 1.5))
     painter.drawPath(_outlines(frame, rows[~frame.contents.nodes.segment[rows]]))
+    inner = frame.lines.boxes[rows] + np.array([8.0, 5.0, -8.0, -5.0])
+    painter.fillPath(rectangles(inner), QColor(frame.look.plate))
 
 
 def _paint_second_outlines(painter: QPainter, frame: Frame) -> None:

@@ -17,28 +17,26 @@ READABLE = 0.5
 
 def paint_tags(painter: QPainter, frame: Frame) -> None:
     """Paint the tags of the links in ``frame`` that fit."""
-    if frame.scale < READABLE:
-        return
-    tags, look = frame.tags, frame.look
-    rows = np.flatnonzero(frame.tag_fits & frame.links[tags.link])
+    rows = np.flatnonzero(frame.tag_fits & frame.links[frame.tags.link])
+    if frame.scale >= READABLE:
+        _paint_texts(painter, frame, rows)
+    _paint_tried(painter, frame, rows)
+
+
+def _paint_texts(painter: QPainter, frame: Frame, rows: Rows) -> None:
+    tags, look, face = frame.tags, frame.look, frame.lettering.tag
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(QColor(look.tag))
     painter.drawPath(rectangles(frame.tag_boxes[rows]))
-    painter.setFont(frame.lettering.tag.font)
+    painter.setFont(face.font)
     named = np.ones(len(rows), bool) if frame.marks is None else frame.marks.links[tags.link[rows]]
-    rise = frame.lettering.tag.rise
     for colour, chosen in ((look.faded, rows[~named]), (look.ink, rows[named])):
         painter.setPen(QColor(colour))
         boxes = frame.tag_boxes[chosen]
-        places = zip(
-            chosen.tolist(),
-            (boxes[:, 0] + 4).tolist(),
-            boxes[:, 1:4:2].mean(axis=1).tolist(),
-            strict=True,
-        )
-        for row, left, middle in places:
-            painter.drawText(QPointF(left, middle + rise), tags.texts[row])
-    _paint_tried(painter, frame, rows)
+        lefts = (boxes[:, 0] + 4).tolist()
+        bases = (boxes[:, 1:4:2].mean(axis=1) + face.rise).tolist()
+        for row, left, base in zip(chosen.tolist(), lefts, bases, strict=True):
+            painter.drawText(QPointF(left, base), tags.texts[row])
 
 
 def _paint_tried(painter: QPainter, frame: Frame, rows: Rows) -> None:
@@ -58,7 +56,7 @@ def paint_flags(painter: QPainter, frame: Frame, corners: Floats, size: float, s
     size = max(size, 4.0 / frame.scale)
     legs = np.array([[0.0, 0.0], [-size, 0.0], [0.0, side * size]])
     corner = corners[:, None, :] + legs
-    painter.setPen(Qt.PenStyle.NoPen)
+    painter.setPen(pen_of(frame, frame.look.paper, 1.0))
     painter.setBrush(QColor(frame.look.ink))
     painter.drawPath(polylines(corner, closed=True))
     painter.setBrush(Qt.BrushStyle.NoBrush)

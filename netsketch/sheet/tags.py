@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
 from dataclasses import dataclass
 
 import numpy as np
@@ -34,40 +33,36 @@ class Tags:
 
 def tags_of(contents: Contents, lettering: Lettering, reading: Reading | None) -> Tags:
     """Return a tag for each link, or two where its directions differ in cost."""
-    rows, spots, texts, tried = [], [], [], []
+    rows, spots, texts = [], [], []
     marks = reading.links if reading else {}
     for row, key in enumerate(contents.links.ids):
         mark = marks.get(key)
+        told = _costs(contents, row)
         if mark is not None and mark.text:
-            told = [(_MIDDLE, mark.text, bool(contents.links.tried[row]))]
-        else:
-            told = list(_costs(contents, row))
-        for spot, text, changed in told:
+            told = [(_MIDDLE, mark.text)]
+        for spot, text in told:
             rows.append(row)
             spots.append(spot)
             texts.append(text)
-            tried.append(changed)
     fitted = [lettering.tag.fitted(text, 140.0) for text in texts]
     return Tags(
         link=np.array(rows, dtype=np.intp),
         spot=np.array(spots, dtype=np.intp),
         width=np.array([width + 8 for _, width in fitted], dtype=float),
         texts=[text for text, _ in fitted],
-        tried=np.array(tried, dtype=bool),
+        tried=contents.links.tried[np.array(rows, dtype=np.intp)],
     )
 
 
-def _costs(contents: Contents, row: int) -> Iterator[tuple[int, str, bool]]:
+def _costs(contents: Contents, row: int) -> list[tuple[int, str]]:
     links, segment = contents.links, contents.nodes.segment
     cost, back = links.costs[row]
     old, old_back = links.planned.get(row, (cost, back))
     if segment[links.tail[row]]:
-        yield _MIDDLE, _changed(old_back, back), old_back != back
-    elif segment[links.head[row]] or (cost == back and old == old_back):
-        yield _MIDDLE, _changed(old, cost), old != cost
-    else:
-        yield _AT_TAIL, _changed(old, cost), old != cost
-        yield _AT_HEAD, _changed(old_back, back), old_back != back
+        return [(_MIDDLE, _changed(old_back, back))]
+    if segment[links.head[row]] or (cost == back and old == old_back):
+        return [(_MIDDLE, _changed(old, cost))]
+    return [(_AT_TAIL, _changed(old, cost)), (_AT_HEAD, _changed(old_back, back))]
 
 
 def _changed(old: int, new: int) -> str:
@@ -75,25 +70,44 @@ def _changed(old: int, new: int) -> str:
 
 
 def place_tags(tags: Tags, lines: Lines, links: Links) -> tuple[Floats, Flags]:
-    """Return the rectangles (k, 4) of the tags, and which of them fit their link."""
+    """Return the rectangles (k, 4) of the tags, and which of them fit their link.
+
+    What the trial changes always shows.
+    """
     along, length = lines.along[tags.link], lines.length[tags.link]
-    extent = np.abs(along[:, 0]) * tags.width + np.abs(along[:, 1]) * TAG_HEIGHT
     down = links.down[tags.link]
+    from_tail = _nearest(tags, lines, lines.points[tags.link, 1], links.tail[tags.link])
+    from_head = _nearest(tags, lines, lines.points[tags.link, 2], links.head[tags.link])
+    reach = (np.abs(along[:, 0]) * tags.width + np.abs(along[:, 1]) * TAG_HEIGHT) / 2 + 2
     stagger = links.lane[tags.link] * np.abs(along[:, 1]) * 20.0
-    middle = np.where(down, length * 0.5 - GAP - 6 - extent / 2, length / 2 + stagger)
-    near = extent / 2 + _CLEAR + _BAND_ROOM * np.abs(along[:, 1])
-    at = np.select([tags.spot == _AT_TAIL, tags.spot == _AT_HEAD], [near, length - near], middle)
+    middle = np.where(down, length / 2 - GAP - reach - 3, length / 2 + stagger)
+    spots = [tags.spot == _AT_TAIL, tags.spot == _AT_HEAD]
+    at = np.select(spots, [from_tail, length - from_head], middle)
+    end = np.where(tags.spot == _MIDDLE, length, length / 2) - np.where(down, GAP, 0)
+    fits = np.select(
+        spots,
+        [from_tail + reach <= end, from_head + reach <= end],
+        (middle >= from_tail) & (length - middle >= from_head),
+    )
     centre = lines.points[tags.link, 1] + along * at[:, None]
     half = np.stack([tags.width / 2, np.full(len(at), TAG_HEIGHT / 2)], axis=1)
-    share = np.where(down, length / 2 - GAP - 6, length) / np.where(tags.spot == 0, 1, 2)
-    fits = share >= np.where(tags.spot == 0, extent + 2 * _CLEAR, near + extent / 2 + 2)
-    return np.concatenate([centre - half, centre + half], axis=1), _both(tags, fits)
+    boxes = np.concatenate([centre - half, centre + half], axis=1)
+    return boxes, _both(tags, fits) | tags.tried
+
+
+def _nearest(tags: Tags, lines: Lines, start: Floats, node: Rows) -> Floats:
+    """Return how far along its link a tag clears the plate that the link leaves at
+    ``start``: past the plate's side, or past its upper or lower edge and the band."""
+    along = np.maximum(np.abs(lines.along[tags.link]), 1e-6)
+    past_side = (tags.width / 2 + _CLEAR) / along[:, 0]
+    past_edge = (TAG_HEIGHT / 2 + _CLEAR + _BAND_ROOM) / along[:, 1]
+    boxes = lines.bars[node]
+    at_side = (start[:, 0] <= boxes[:, 0] + 0.5) | (start[:, 0] >= boxes[:, 2] - 0.5)
+    return np.where(at_side, past_side, past_edge)
 
 
 def _both(tags: Tags, fits: Flags) -> Flags:
     """A pair of tags shows only together: one alone would read as both directions."""
-    if len(fits) < 2:
-        return fits
     pair = np.flatnonzero(tags.spot == _AT_TAIL)
     fits[pair] = fits[pair + 1] = fits[pair] & fits[pair + 1]
     return fits
