@@ -2,21 +2,27 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
+from typing import Any
 
 import numpy as np
 import numpy.typing as npt
 
 from netsketch.routing import AllPairs, Cancelled, Network, NextHop, Routes, derive, never
-from netsketch.routing.allpairs import over_sources, unreached
+from netsketch.routing.allpairs import distances_between, over_sources, unreached
 from netsketch.routing.network import Distances
 
 OUTCOMES = {derive.MOVED: "moved", derive.CUT_OFF: "cut off", derive.RESTORED: "restored"}
 """Outcome code -> the word for it."""
 
 UNCHANGED = derive.UNCHANGED
+
+SOURCES_AT_ONCE = 512
+
+Columns = tuple[npt.NDArray[Any], ...]
+"""Sources, targets, outcomes, costs before, costs after."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,13 +46,12 @@ class Ledger:
     Next hops are derived when a row is asked for.
     """
 
-    def __init__(self, before: AllPairs, after: AllPairs, outcomes: npt.NDArray[np.int8]) -> None:
-        self.routers = before.network.structure.vertex_ids[: before.network.structure.routers]
-        self._networks = before.network, after.network
-        sources, targets = np.nonzero(outcomes != UNCHANGED)
-        self.sources, self.targets = sources.astype(np.int32), targets.astype(np.int32)
-        self.outcomes = outcomes[sources, targets]
-        self.before, self.after = (_costs(pairs, sources, targets) for pairs in (before, after))
+    def __init__(self, before: Network, after: Network, parts: Sequence[Columns]) -> None:
+        self.routers = before.structure.vertex_ids[: before.structure.routers]
+        self._networks = before, after
+        self.sources, self.targets = (_joined(parts, k, np.int32) for k in (0, 1))
+        self.outcomes = _joined(parts, 2, np.int8)
+        self.before, self.after = (_joined(parts, k, np.int64) for k in (3, 4))
         self.moved = int((self.outcomes == derive.MOVED).sum())
         self.cut_off = int((self.outcomes == derive.CUT_OFF).sum())
         self.restored = int((self.outcomes == derive.RESTORED).sum())
@@ -76,12 +81,10 @@ class Ledger:
         )
 
 
-def _costs(
-    pairs: AllPairs, sources: npt.NDArray[np.intp], targets: npt.NDArray[np.intp]
-) -> npt.NDArray[np.int64]:
-    costs = pairs.distances[sources, targets].astype(np.int64)
-    costs[costs == pairs.unreached] = -1
-    return costs
+def _joined(parts: Sequence[Columns], column: int, kind: type[np.generic]) -> npt.NDArray[Any]:
+    if not parts:
+        return np.empty(0, kind)
+    return np.concatenate([part[column] for part in parts]).astype(kind, copy=False)
 
 
 def outcomes_of(
@@ -128,10 +131,50 @@ def outcomes_of(
 def compare(before: AllPairs, after: AllPairs, cancelled: Callable[[], bool] = never) -> Ledger:
     """Return the ledger of ``after`` against ``before``: :func:`outcomes_of` every ordered
     pair of routers."""
-    old, new = before.network, after.network
-    routers = np.arange(old.structure.routers, dtype=np.int32)
-    outcomes = outcomes_of(old, new, routers, before.distances, after.distances, cancelled)
-    return Ledger(before, after, outcomes[:, : len(routers)])
+    return _collect(
+        before.network,
+        after.network,
+        lambda first, last: (before.distances[first:last], after.distances[first:last]),
+        cancelled,
+    )
+
+
+def compare_networks(old: Network, new: Network, cancelled: Callable[[], bool] = never) -> Ledger:
+    """Return the ledger of ``new`` against ``old`` with no distances kept: a few rows at a
+    time, for plans too large for all pairs at once. Slower than :func:`compare`, equal."""
+
+    def rows(first: int, last: int) -> tuple[Distances, Distances]:
+        return distances_between(old, first, last), distances_between(new, first, last)
+
+    return _collect(old, new, rows, cancelled)
+
+
+def _collect(
+    old: Network,
+    new: Network,
+    rows: Callable[[int, int], tuple[Distances, Distances]],
+    cancelled: Callable[[], bool],
+) -> Ledger:
+    routers = old.structure.routers
+    parts: list[Columns] = []
+    for first in range(0, routers, SOURCES_AT_ONCE):
+        last = min(first + SOURCES_AT_ONCE, routers)
+        sources = np.arange(first, last, dtype=np.int32)
+        before, after = rows(first, last)
+        outcomes = outcomes_of(old, new, sources, before, after, cancelled)[:, :routers]
+        row, target = np.nonzero(outcomes != UNCHANGED)
+        if row.size:
+            was, now = _costs(before, row, target), _costs(after, row, target)
+            parts.append((sources[row], target, outcomes[row, target], was, now))
+    return Ledger(old, new, parts)
+
+
+def _costs(
+    rows: Distances, row: npt.NDArray[np.intp], target: npt.NDArray[np.intp]
+) -> npt.NDArray[np.int64]:
+    costs = rows[row, target].astype(np.int64)
+    costs[costs == unreached(rows.dtype.type)] = -1
+    return costs
 
 
 def changed_arcs(old: Network, new: Network) -> npt.NDArray[np.int32]:

@@ -50,6 +50,26 @@ def distances_from(network: Network, source: int) -> Distances:
     return row
 
 
+def distances_between(
+    network: Network, first: int, last: int, cancelled: Callable[[], bool] = never
+) -> Distances:
+    """Return the distances from routers ``first … last - 1`` to every vertex
+    (last - first, V), from scratch on all processors. Raises :class:`Cancelled`."""
+    s = network.structure
+    rows = np.empty((last - first, s.vertices), network.distance_type)
+
+    def work(low: int, high: int) -> None:
+        if cancelled():
+            raise Cancelled
+        kernels.source_rows(
+            s.indptr, s.head, network.weight, network.transit, unreached(rows.dtype.type),
+            first + low, rows[low:high],
+        )  # fmt: skip
+
+    over_sources(last - first, work, chunk=64)
+    return rows
+
+
 def over_sources(count: int, work: Callable[[int, int], int | None], chunk: int = 0) -> int:
     """Call ``work(first, last)`` for slices of ``count`` sources on all processors and
     return the sum of what it returns."""
@@ -66,23 +86,7 @@ class AllPairs:
 
     def __init__(self, network: Network, cancelled: Callable[[], bool] = never) -> None:
         self.network = network
-        self.distances: Distances
-        self._compute(cancelled)
-
-    def _compute(self, cancelled: Callable[[], bool]) -> None:
-        network, s = self.network, self.network.structure
-        self.distances = np.empty((s.routers, s.vertices), network.distance_type)
-        nothing = self.unreached
-
-        def work(first: int, last: int) -> None:
-            if cancelled():
-                raise Cancelled
-            kernels.source_rows(
-                s.indptr, s.head, network.weight, network.transit, nothing, first, last,
-                self.distances,
-            )  # fmt: skip
-
-        over_sources(s.routers, work, chunk=64)
+        self.distances = distances_between(network, 0, network.structure.routers, cancelled)
 
     @property
     def unreached(self) -> int:
@@ -103,7 +107,7 @@ class AllPairs:
         """
         if network.distance_type is not self.distances.dtype.type:
             self.network = network
-            self._compute(never)
+            self.distances = distances_between(network, 0, network.structure.routers)
             return Update(self.distances.size, len(network.cost))
         if network.structure is self.network.structure:
             return self._batch(network.weight, network.transit, network)

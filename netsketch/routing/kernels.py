@@ -118,13 +118,12 @@ def source_rows(
     transit: Array,
     unreached: int,
     first: int,
-    last: int,
     rows: Array,
 ) -> None:
-    """:func:`source_row` for sources ``first … last - 1`` into ``rows`` (R, V)."""
+    """:func:`source_row` for the sources from ``first`` on into ``rows`` (S, V)."""
     heap = np.empty(len(head) + 1, np.int64)
-    for source in range(first, last):
-        source_row(indptr, head, weight, transit, unreached, source, rows[source], heap)
+    for i in range(len(rows)):
+        source_row(indptr, head, weight, transit, unreached, first + i, rows[i], heap)
 
 
 @compiled

@@ -12,11 +12,22 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from netsketch import readings
-from netsketch.analysis import Ledger, RouteRow, changed_destinations, compare, forwarding_table
+from netsketch.analysis import (
+    Ledger,
+    RouteRow,
+    changed_destinations,
+    compare,
+    compare_networks,
+    forwarding_table,
+)
 from netsketch.model import ChangeSet, LinkState, Plan, Router, Segment, Trial, edits
 from netsketch.readings import Reading
 from netsketch.routing import AllPairs, Network, Routes, ShareOfLink, compile_plan, never
 from netsketch.session.document import Document
+
+MOST_KEPT = 5_000
+"""Routers up to which all pairs are kept: 100 MB for the plan and as much for the trial
+with distances of 32 bits, twice that with 64."""
 
 
 @dataclass(frozen=True)
@@ -136,6 +147,12 @@ class Answers:
             out.path_count(vertex),
         )
 
+    @property
+    def keeps_all_pairs(self) -> bool:
+        """Whether the plan is small enough to keep all pairs current; above that every
+        answer still comes, the ledger more slowly."""
+        return self.network.structure.routers <= MOST_KEPT
+
     def ledger_task(self) -> Callable[[Callable[[], bool]], Ledger]:
         """Return the work that computes the ledger of the trial as it stands now: for one
         background thread at a time, with a function that tells whether to stop."""
@@ -145,7 +162,8 @@ class Answers:
 
 class PairStates:
     """The distances between all pairs in the plan and in the trial, each moved on by what
-    changed since they were last asked for."""
+    changed since they were last asked for. Above :data:`MOST_KEPT` routers nothing is kept
+    and every ledger is computed anew, a few sources at a time."""
 
     def __init__(self) -> None:
         self._planned: AllPairs | None = None
@@ -153,6 +171,9 @@ class PairStates:
 
     def ledger(self, before: Network, after: Network, cancelled: Callable[[], bool]) -> Ledger:
         """Return the ledger of ``after`` against ``before``. Raises ``Cancelled``."""
+        if before.structure.routers > MOST_KEPT:
+            self._planned = self._tried = None
+            return compare_networks(before, after, cancelled)
         if self._planned is None or self._tried is None:
             self._planned = AllPairs(before, cancelled)
             self._tried = self._planned.copy()
