@@ -26,7 +26,8 @@ class Frame:
     """One state of the sheet, ready to paint.
 
     ``scale``: pixels for one sheet unit, which decides the level of detail.
-    ``nodes``, ``links``: what to paint of it; ``still``: paint at full quality.
+    ``nodes``, ``links``: what to paint of it; ``still``: paint at full quality;
+    ``told``: the tags hold texts of the reading.
     """
 
     contents: Contents
@@ -41,6 +42,7 @@ class Frame:
     nodes: Flags
     links: Flags
     still: bool = True
+    told: bool = False
 
     def only(self, nodes: Flags, links: Flags) -> Frame:
         """Return this frame with these nodes and links alone."""
@@ -90,6 +92,7 @@ def frame_of(
         scale=1.0,
         nodes=np.ones(len(contents.nodes.ids), dtype=bool),
         links=np.ones(len(contents.links.ids), dtype=bool),
+        told=_told(reading),
     )
     frame.tag_boxes, frame.tag_fits = place_tags(frame.tags, frame.lines, contents.links)
     return frame
@@ -104,10 +107,19 @@ def relaid(frame: Frame) -> Frame:
 
 def with_reading(frame: Frame, reading: Reading | None, look: Look) -> Frame:
     """Return the frame with another reading or look."""
-    tags = tags_of(frame.contents, frame.lettering, reading)
-    boxes, fits = place_tags(tags, frame.lines, frame.contents.links)
+    was_told = frame.told
     marks = None if reading is None else marks_of(reading, frame.contents, look)
-    return replace(frame, tags=tags, tag_boxes=boxes, tag_fits=fits, marks=marks, look=look)
+    frame = replace(frame, marks=marks, look=look, told=_told(reading))
+    if frame.told or was_told:
+        frame.tags = tags_of(frame.contents, frame.lettering, reading)
+        placed = place_tags(frame.tags, frame.lines, frame.contents.links)
+        frame.tag_boxes, frame.tag_fits = placed
+    return frame
+
+
+def _told(reading: Reading | None) -> bool:
+    """Return whether the reading puts texts of its own into tags."""
+    return reading is not None and any(mark.text for mark in reading.links.values())
 
 
 def corners(area: QRectF) -> tuple[float, float, float, float]:

@@ -44,7 +44,8 @@ class Strands:
 
 @dataclass(slots=True)
 class Marks:
-    """What a reading says, by row. ``links`` and ``nodes`` flag what it names."""
+    """What a reading says, by row. ``links`` and ``nodes`` flag what it names; the other
+    flags tell the nodes of one role."""
 
     links: Flags
     nodes: Flags
@@ -54,44 +55,84 @@ class Marks:
     """(m,): half the width that a link's strands take."""
     letters: list[str]
     hues: list[int]
+    focus: Flags
+    target: Flags
+    cut_off: Flags
+    moved: Flags
 
 
 def marks_of(reading: Reading, contents: Contents, look: Look) -> Marks:
     """Return ``reading`` in the colours of ``look``; ids not on the sheet are passed over."""
-    links, nodes = contents.links, contents.nodes
-    marks = Marks(
-        links=np.zeros(len(links.ids), dtype=bool),
-        nodes=np.zeros(len(nodes.ids), dtype=bool),
-        strands={},
-        plates={},
-        reach=np.zeros(len(links.ids)),
+    rows = contents.nodes.row
+    plates = {rows[key]: mark for key, mark in reading.plates.items() if key in rows}
+    count = len(contents.nodes.ids)
+
+    def flags(chosen: list[int]) -> Flags:
+        found = np.zeros(count, dtype=bool)
+        found[chosen] = True
+        return found
+
+    def role(name: str) -> Flags:
+        return flags([row for row, mark in plates.items() if mark.role == name])
+
+    strands, named, reach = _strands_of(reading, contents, look)
+    return Marks(
+        links=named,
+        nodes=flags(list(plates)),
+        strands=strands,
+        plates=plates,
+        reach=reach,
         letters=[hop.letter for hop in reading.first_hops],
         hues=[hop.colour for hop in reading.first_hops],
+        focus=role("focus"),
+        target=role("target"),
+        cut_off=role("cut off"),
+        moved=flags([row for row, mark in plates.items() if mark.moved]),
     )
+
+
+def _strands_of(
+    reading: Reading, contents: Contents, look: Look
+) -> tuple[dict[Stroke, Strands], Flags, Floats]:
+    """Return the strands by stroke, which links are named, and half their widths.
+
+    Most links of a reading are alike, so each layout of strands is worked out once.
+    """
+    strands: dict[Stroke, Strands] = {}
+    named = np.zeros(len(contents.links.ids), dtype=bool)
+    reach = np.zeros(len(contents.links.ids))
+    layouts: dict[tuple[object, ...], Layout] = {}
     for key, mark in reading.links.items():
-        row = links.row.get(key)
-        if row is not None:
-            marks.links[row] = True
-            _lay_strands(marks, row, list(_strokes(mark, reading, look)))
-    for key, plate in reading.plates.items():
-        row = nodes.row.get(key)
-        if row is not None:
-            marks.nodes[row] = True
-            marks.plates[row] = plate
-    return marks
+        row = contents.links.row.get(key)
+        if row is None:
+            continue
+        named[row] = True
+        alike = tuple((t.direction, t.role, t.letters, t.share) for t in mark.travels)
+        layout = layouts.get(alike)
+        if layout is None:
+            layout = layouts[alike] = _layout(mark, reading, look, strands)
+        reach[row] = layout[1]
+        for strand, offset, direction in layout[0]:
+            strand.rows.append(row)
+            strand.offsets.append(offset)
+            strand.directions.append(direction)
+    return strands, named, reach
 
 
-def _lay_strands(marks: Marks, row: int, strokes: list[tuple[Stroke, int]]) -> None:
-    """Set strands side by side across the link, centred on it."""
+Layout = tuple[list[tuple[Strands, float, int]], float]
+"""The strands of a link with their offsets and directions, and half their width."""
+
+
+def _layout(mark: LinkMark, reading: Reading, look: Look, strands: dict[Stroke, Strands]) -> Layout:
+    """Set strands side by side across a link, centred on it."""
+    strokes = list(_strokes(mark, reading, look))
     total = sum(stroke.width for stroke, _ in strokes) + 1.0 * max(len(strokes) - 1, 0)
-    marks.reach[row] = total / 2
-    edge = -total / 2
+    edge, laid = -total / 2, []
     for stroke, direction in strokes:
-        strands = marks.strands.setdefault(stroke, Strands())
-        strands.rows.append(row)
-        strands.offsets.append(edge + stroke.width / 2)
-        strands.directions.append(direction)
+        strand = strands.setdefault(stroke, Strands())
+        laid.append((strand, edge + stroke.width / 2, direction))
         edge += stroke.width + 1.0
+    return laid, total / 2
 
 
 def _strokes(mark: LinkMark, reading: Reading, look: Look) -> Iterator[tuple[Stroke, int]]:
@@ -113,7 +154,7 @@ def _strokes_of(travel: Travel, reading: Reading, look: Look) -> Iterator[Stroke
         "after": look.after,
     }.get(travel.role)
     if role_colour is not None:
-        yield Stroke(role_colour, 4.0, dash, hollow)
+        yield Stroke(role_colour, round(2.2 + 2.0 * min(travel.share, 1.0), 1), dash, hollow)
         return
     colours = [look.first_hops[reading.first_hops[i].colour % 7] for i in travel.letters]
     width = {0: 3.4, 1: 4.0, 2: 3.0}.get(len(colours), 2.4)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import numpy as np
 from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QColor, QPainter
 
@@ -9,6 +10,7 @@ from netsketch.readings.reading import PlateMark
 from netsketch.sheet.frame import Frame
 from netsketch.sheet.marks import Marks
 from netsketch.sheet.paint_links import pen_of
+from netsketch.sheet.paths import corners_of, draw_shapes
 
 BAND_HEIGHT = 14.0
 _BELOW = 3.0
@@ -26,12 +28,16 @@ def paint_bands(painter: QPainter, frame: Frame) -> None:
     """Paint the bands of the plates that the reading names."""
     if frame.marks is None:
         return
+    plates = frame.marks.plates
+    rows = [row for row in np.flatnonzero(frame.nodes).tolist() if row in plates]
+    if frame.scale < VISIBLE:
+        _fill_plates(painter, frame, frame.marks, rows)
+        return
     painter.setFont(frame.lettering.band.font)
-    for row, mark in frame.marks.plates.items():
-        if frame.nodes[row]:
-            cells = _cells(frame, frame.marks, mark)
-            if cells:
-                _paint_band(painter, frame, row, cells, mark.moved)
+    for row in rows:
+        cells = _cells(frame, frame.marks, plates[row])
+        if cells:
+            _paint_band(painter, frame, row, cells, plates[row].moved)
 
 
 def _cells(frame: Frame, marks: Marks, mark: PlateMark) -> list[Cell]:
@@ -56,9 +62,6 @@ def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell], mo
     left, _, right, bottom = frame.lines.boxes[row].tolist()
     spare = max(0.0, (right - left - sum(needs)) / len(cells))
     x = min(left, (left + right - sum(needs)) / 2)
-    if frame.scale < VISIBLE:
-        _fill_plate(painter, frame, row, cells)
-        return
     bottom += _SECOND_OUTLINE if moved else 0.0
     outline = QRectF(x, bottom + _BELOW, sum(needs) + spare * len(cells), BAND_HEIGHT)
     painter.fillRect(outline.adjusted(-1, -_BELOW + 1, 1, 1), QColor(frame.look.paper))
@@ -74,10 +77,22 @@ def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell], mo
         x += need + spare
 
 
-def _fill_plate(painter: QPainter, frame: Frame, row: int, cells: list[Cell]) -> None:
-    """Where a band could not be seen, colour the plate itself."""
-    left, top, right, bottom = frame.lines.boxes[row].tolist()
-    step = (right - left) / len(cells)
-    for place, (_, ground, _) in enumerate(cells):
-        if ground:
-            painter.fillRect(QRectF(left + place * step, top, step, bottom - top), QColor(ground))
+def _fill_plates(painter: QPainter, frame: Frame, marks: Marks, rows: list[int]) -> None:
+    """Where bands could not be seen, colour the plates themselves, one path a colour."""
+    parts: dict[int, list[tuple[int, float, float]]] = {}
+    for row in rows:
+        letters = marks.plates[row].letters
+        for place, index in enumerate(letters):
+            share = (row, place / len(letters), (place + 1) / len(letters))
+            parts.setdefault(marks.hues[index], []).append(share)
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing, False)
+    painter.setPen(_NO_PEN)
+    for hue, shares in parts.items():
+        chosen, start, end = np.array(shares).T
+        boxes = frame.lines.boxes[chosen.astype(np.intp)]
+        width = boxes[:, 2] - boxes[:, 0]
+        left, right = boxes[:, 0] + width * start, boxes[:, 0] + width * end
+        painter.setBrush(QColor(frame.look.first_hops[hue % len(frame.look.first_hops)]))
+        filled = np.stack([left, boxes[:, 1], right, boxes[:, 3]], axis=1)
+        draw_shapes(painter, corners_of(filled))
+    painter.setRenderHint(QPainter.RenderHint.Antialiasing, frame.still)

@@ -9,7 +9,7 @@ from PySide6.QtGui import QColor, QPainter, QPen
 from netsketch.sheet.contents import Floats, Rows
 from netsketch.sheet.frame import Frame
 from netsketch.sheet.marks import Strands, Stroke
-from netsketch.sheet.paths import polylines
+from netsketch.sheet.paths import draw_shapes, polylines
 from netsketch.sheet.tags import GAP
 
 _FLAT = Qt.PenCapStyle.FlatCap
@@ -104,12 +104,13 @@ def _paint_chevrons(
     arrows = chevrons(frame, rows, points, max(stroke.width, 1.6 / frame.scale))
     if not len(arrows):
         return
-    path = polylines(arrows, closed=True)
-    edge = frame.look.ink if stroke.edge else frame.look.paper
-    painter.strokePath(path, pen_of(frame, edge, 2.4, 1.4))
-    painter.fillPath(path, QColor(frame.look.paper if stroke.hollow else stroke.colour))
-    if stroke.hollow:
-        painter.strokePath(path, pen_of(frame, stroke.colour, 1.5))
+    if frame.scale > 0.4:
+        edge = frame.look.ink if stroke.edge else frame.look.paper
+        painter.strokePath(polylines(arrows, closed=True), pen_of(frame, edge, 2.4))
+    painter.setPen(pen_of(frame, stroke.colour, 1.5) if stroke.hollow else QPen(_NO_PEN))
+    painter.setBrush(QColor(frame.look.paper if stroke.hollow else stroke.colour))
+    draw_shapes(painter, arrows)
+    painter.setBrush(_NO_BRUSH)
 
 
 def chevrons(frame: Frame, rows: Rows, points: Floats, width: float) -> Floats:
@@ -120,9 +121,9 @@ def chevrons(frame: Frame, rows: Rows, points: Floats, width: float) -> Floats:
     """
     length = frame.lines.length[rows]
     size = min(max(9.0 + width, 11.0), 16.0) / min(1.0, max(frame.scale * 1.5, 0.2))
-    count = np.select(
-        [length < 2.4 * size, length < 90, length < 230, length < 420], [0, 1, 2, 4], 6
-    )
+    seen = length * min(1.0, frame.scale)
+    limits = [(length < 2.4 * size) | (seen < 24), seen < 90, seen < 230, seen < 420]
+    count = np.select(limits, [0, 1, 2, 4], 6)
     along = points[:, 2] - points[:, 1]
     along /= np.maximum(np.hypot(along[:, 0], along[:, 1]), 1e-9)[:, None]
     across = np.stack([-along[:, 1], along[:, 0]], axis=1)

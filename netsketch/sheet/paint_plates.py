@@ -11,7 +11,7 @@ from netsketch.sheet.frame import Frame
 from netsketch.sheet.lettering import Face
 from netsketch.sheet.paint_links import pen_of
 from netsketch.sheet.paint_tags import paint_flags
-from netsketch.sheet.paths import polylines, rectangles
+from netsketch.sheet.paths import corners_of, draw_shapes, polylines, rectangles
 
 READABLE_NAME, READABLE_SITE = 0.42, 0.55
 """The least scales at which names and sites are painted."""
@@ -23,33 +23,24 @@ _NO_BRUSH = Qt.BrushStyle.NoBrush
 def paint_plates(painter: QPainter, frame: Frame) -> None:
     """Paint the plates and rails of ``frame``."""
     _paint_bars(painter, frame)
-    focus = _with_role(frame, "focus")
-    cut_off, target = _with_role(frame, "cut off"), _with_role(frame, "target")
+    marks, none = frame.marks, np.zeros_like(frame.nodes)
+    focus = none if marks is None else marks.focus
     faded = frame.faded_nodes()
     plates = frame.nodes & ~frame.contents.nodes.segment
     look = frame.look
     _paint_shapes(painter, frame, plates & ~faded & ~focus, look.plate, look.ink)
     _paint_shapes(painter, frame, plates & faded, look.plate, look.hairline)
     _paint_shapes(painter, frame, frame.nodes & focus, look.ink, look.ink)
-    painter.setPen(pen_of(frame, look.ink, 3.4, 2.0))
-    painter.setBrush(_NO_BRUSH)
-    painter.drawPath(_outlines(frame, np.flatnonzero(frame.nodes & target)))
-    _paint_hatching(painter, frame, frame.nodes & cut_off)
-    _paint_second_outlines(painter, frame)
+    if marks is not None:
+        _paint_outlines(painter, frame, marks.target, 3.4, 0.0)
+        _paint_hatching(painter, frame, frame.nodes & marks.cut_off)
+        _paint_outlines(painter, frame, marks.moved, 1.5, 4.0)
     _paint_names(painter, frame, focus, faded)
     tried = np.flatnonzero(frame.nodes & frame.contents.nodes.tried)
     if len(tried):
         paint_flags(
             painter, frame, frame.lines.boxes[tried][:, [2, 1]] + np.array([3.0, -3.0]), 10.0, 1
         )
-
-
-def _with_role(frame: Frame, role: str) -> Flags:
-    flags = np.zeros_like(frame.nodes)
-    if frame.marks is not None:
-        rows = [row for row, mark in frame.marks.plates.items() if mark.role == role]
-        flags[rows] = True
-    return flags
 
 
 def _paint_bars(painter: QPainter, frame: Frame) -> None:
@@ -92,19 +83,22 @@ def _paint_shapes(painter: QPainter, frame: Frame, mask: Flags, fill: str, edge:
                 pen.setDashPattern([3.4, 2.4])
             painter.setPen(pen)
             painter.setBrush(QColor(fill))
-            painter.drawPath(_outlines(frame, rows))
+            _draw_outlines(painter, frame, rows)
     _paint_down(painter, frame, np.flatnonzero(mask & nodes.down), fill, edge)
 
 
-def _outlines(frame: Frame, rows: Rows, grown: float = 0.0) -> QPainterPath:
-    """Return the plates' outlines; square corners where round ones could not be seen."""
+def _draw_outlines(painter: QPainter, frame: Frame, rows: Rows, grown: float = 0.0) -> None:
+    """Draw the plates' shapes; small ones with square corners and sharp edges."""
     boxes = frame.lines.boxes[rows] + np.array([-grown, -grown, grown, grown])
     if frame.scale < READABLE_NAME:
-        return rectangles(boxes)
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing, False)
+        draw_shapes(painter, corners_of(boxes))
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing, frame.still)
+        return
     path = QPainterPath()
     for left, top, right, bottom in boxes.tolist():
         path.addRoundedRect(left, top, right - left, bottom - top, _ROUND + grown, _ROUND + grown)
-    return path
+    painter.drawPath(path)
 
 
 def _paint_down(painter: QPainter, frame: Frame, rows: Rows, fill: str, edge: str) -> None:
@@ -115,7 +109,7 @@ def _paint_down(painter: QPainter, frame: Frame, rows: Rows, fill: str, edge: st
     look = frame.look
     painter.setBrush(QColor(fill))
     painter.setPen(pen_of(frame, edge, 1.5))
-    painter.drawPath(_outlines(frame, rows))
+    _draw_outlines(painter, frame, rows)
     boxes = frame.lines.boxes[rows]
     middle = boxes[:, 0:3:2].mean(axis=1)
     for y in (boxes[:, 1], boxes[:, 3]):
@@ -133,23 +127,24 @@ def _paint_hatching(painter: QPainter, frame: Frame, mask: Flags) -> None:
         return
     painter.setPen(_NO_PEN)
     painter.setBrush(QBrush(QColor(frame.look.faded), Qt.BrushStyle.BDiagPattern))
-    painter.drawPath(_outlines(frame, rows))
+    _draw_outlines(painter, frame, rows)
     painter.drawPath(rectangles(frame.lines.bars[rows]))
     painter.setBrush(_NO_BRUSH)
     painter.setPen(pen_of(frame, frame.look.ink, 1.5))
-    painter.drawPath(_outlines(frame, rows[~frame.contents.nodes.segment[rows]]))
+    _draw_outlines(painter, frame, rows[~frame.contents.nodes.segment[rows]])
     inner = frame.lines.boxes[rows] + np.array([8.0, 5.0, -8.0, -5.0])
     painter.fillPath(rectangles(inner), QColor(frame.look.plate))
 
 
-def _paint_second_outlines(painter: QPainter, frame: Frame) -> None:
-    """Paint the outline that says: moved against the plan."""
-    if frame.marks is None:
-        return
-    moved = [row for row, mark in frame.marks.plates.items() if mark.moved and frame.nodes[row]]
-    painter.setBrush(_NO_BRUSH)
-    painter.setPen(pen_of(frame, frame.look.ink, 1.5))
-    painter.drawPath(_outlines(frame, np.array(moved, dtype=np.intp), grown=4.0))
+def _paint_outlines(
+    painter: QPainter, frame: Frame, mask: Flags, width: float, grown: float
+) -> None:
+    """Paint the heavier outline of a target, or the second one that says: moved."""
+    rows = np.flatnonzero(frame.nodes & mask)
+    if len(rows):
+        painter.setBrush(_NO_BRUSH)
+        painter.setPen(pen_of(frame, frame.look.ink, width, width * 0.6))
+        _draw_outlines(painter, frame, rows, grown)
 
 
 def _paint_names(painter: QPainter, frame: Frame, focus: Flags, faded: Flags) -> None:
@@ -184,7 +179,7 @@ def _paint_text(
     """Paint the name of each row in the middle of its box, or its site below the name."""
     painter.setPen(QColor(colour))
     painter.setFont(face.font)
-    sites = frame.contents.nodes.sites
+    sites, two_lines = frame.contents.nodes.sites, frame.scale >= READABLE_SITE
     boxes = frame.lines.boxes[rows]
     middles = zip(
         rows.tolist(),
@@ -193,5 +188,5 @@ def _paint_text(
         strict=True,
     )
     for row, x, y in middles:
-        line = 9.0 if below else (-6.5 if sites[row] else 0.0)
+        line = 9.0 if below else (-6.5 if sites[row] and two_lines else 0.0)
         painter.drawText(QPointF(x - face.width(texts[row]) / 2, y + line + face.rise), texts[row])

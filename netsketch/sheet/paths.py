@@ -10,13 +10,14 @@ import struct
 
 import numpy as np
 from PySide6.QtCore import QByteArray, QDataStream
-from PySide6.QtGui import QPainterPath
+from PySide6.QtGui import QPainter, QPainterPath
 
 from netsketch.sheet.contents import Floats
 
 _ELEMENT = np.dtype([("kind", ">i4"), ("x", ">f8"), ("y", ">f8")])
 _MOVE_TO, _LINE_TO = 0, 1
 _WINDING = 1
+_BUNCH = 200
 
 
 def polylines(points: Floats, closed: bool = False) -> QPainterPath:
@@ -35,6 +36,20 @@ def polylines(points: Floats, closed: bool = False) -> QPainterPath:
     return path
 
 
+def draw_shapes(painter: QPainter, points: Floats) -> None:
+    """Draw the polygons ``points`` (k, p, 2) with the painter's pen and brush.
+
+    In bunches, because the time to fill one path grows faster than what is in it.
+    """
+    for start in range(0, len(points), _BUNCH):
+        painter.drawPath(polylines(points[start : start + _BUNCH], closed=True))
+
+
+def corners_of(boxes: Floats) -> Floats:
+    """Return the corners (k, 4, 2) of ``boxes`` (k, 4): left, top, right, bottom."""
+    return boxes[:, [0, 1, 2, 1, 2, 3, 0, 3]].reshape(-1, 4, 2)
+
+
 def rectangles(boxes: Floats) -> QPainterPath:
     """Return one path of the rectangles ``boxes`` (k, 4): left, top, right, bottom."""
-    return polylines(boxes[:, [0, 1, 2, 1, 2, 3, 0, 3]].reshape(-1, 4, 2), closed=True)
+    return polylines(corners_of(boxes), closed=True)

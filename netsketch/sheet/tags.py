@@ -17,7 +17,7 @@ _CLEAR = 5.0
 """Between a tag and the plate it is nearest to."""
 GAP = 11.0
 """Half the gap in a link that is down."""
-_BAND_ROOM = 8.0
+_BAND_ROOM = 14.0
 
 
 @dataclass(slots=True)
@@ -100,8 +100,9 @@ def _nearest(tags: Tags, lines: Lines, start: Floats, node: Rows) -> Floats:
     ``start``: past the plate's side, or past its upper or lower edge and the band."""
     along = np.maximum(np.abs(lines.along[tags.link]), 1e-6)
     past_side = (tags.width / 2 + _CLEAR) / along[:, 0]
-    past_edge = (TAG_HEIGHT / 2 + _CLEAR + _BAND_ROOM) / along[:, 1]
     boxes = lines.bars[node]
+    band = np.where(start[:, 1] >= boxes[:, 3] - 0.5, _BAND_ROOM, 0.0)
+    past_edge = (TAG_HEIGHT / 2 + _CLEAR + band) / along[:, 1]
     at_side = (start[:, 0] <= boxes[:, 0] + 0.5) | (start[:, 0] >= boxes[:, 2] - 0.5)
     return np.where(at_side, past_side, past_edge)
 
