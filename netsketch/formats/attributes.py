@@ -41,7 +41,7 @@ class Found:
             if name in reserved or not isinstance(value, str | int | float | bool):
                 left.append(name)
             else:
-                kept[name] = value
+                kept[name] = value if isinstance(value, str) else number(value)
         return kept, left
 
 

@@ -11,6 +11,8 @@ from typing import Any
 import msgspec
 import networkx as nx
 
+from netsketch.formats.attributes import text
+
 Attributes = dict[str, Any]
 
 POSITION = "netsketch_position"
@@ -46,7 +48,7 @@ def of_networkx(graph: nx.MultiDiGraph[Any], directed: bool) -> Drawing:
             DrawnEdge(
                 str(source),
                 str(target),
-                key if isinstance(key, str) else None,
+                text(key) if isinstance(key, str | tuple) else None,
                 {name: value for name, value in data.items() if name != POSITION},
             )
             for source, target, key, data in edges

@@ -12,6 +12,11 @@ def one_line(text: str) -> str:
     return "".join(c if c.isprintable() else " " for c in text).strip()
 
 
+def shortened(text: str, limit: int = 120) -> str:
+    """Return the first words of what another parser complains about."""
+    return text if len(text) <= limit else text[: limit - 1] + "…"
+
+
 class FormatError(ValueError):
     """A file that cannot be read or written. ``str()`` is one line:
     ``<file>: <place>: <reason>``, without the place where the whole file is meant."""

@@ -11,8 +11,8 @@ import networkx as nx
 from netsketch.formats import drawing, exports, imports, strict_json
 from netsketch.formats.attributes import text, truth
 from netsketch.formats.drawing import Attributes, Drawing
-from netsketch.formats.errors import FormatError, Loaded
-from netsketch.model import Plan
+from netsketch.formats.errors import FormatError, Loaded, shortened
+from netsketch.model import Plan, quoted
 
 NAME: Final = "GML"
 
@@ -30,11 +30,23 @@ def loads(data: bytes, file: str) -> Loaded:
     except StopIteration as error:
         raise FormatError(file, f"line {len(lines)}", "ends too early") from error
     except (nx.NetworkXException, ValueError, LookupError, TypeError, AttributeError) as error:
-        raise FormatError(file, "", f"not GML that can be read: {error}") from error
+        raise _refusal(str(error), file) from error
+    if not all(type(n) is int for *_, n in graph.edges(data=drawing.POSITION)):
+        raise FormatError(file, "", "not GML: quotation marks do not pair up")
     directed = truth(graph.graph.pop(_DIRECTED, False)) is True
     graph.graph.pop("netsketch_multigraph", None)
     drawn = drawing.of_networkx(graph, directed)
     return imports.to_loaded(_named_by_label(drawn), file, NAME)
+
+
+def _refusal(message: str, file: str) -> FormatError:
+    """Return the error for what networkx says, with its line as the place."""
+    found = re.fullmatch(r"(.*) at \((\d+), \d+\)", message, re.DOTALL)
+    reason, place = (found[1], f"line {found[2]}") if found else (message, "")
+    if reason.startswith("cannot tokenize "):
+        rest = reason.removeprefix("cannot tokenize ")
+        return FormatError(file, place, f"not GML: cannot be read from {quoted(rest, 30)} on")
+    return FormatError(file, place, f"not GML that can be read: {shortened(reason)}")
 
 
 def _prepared(source: str) -> str:
@@ -77,7 +89,12 @@ def _named_by_label(drawn: Drawing) -> Drawing:
 
 
 def dumps(plan: Plan, file: str) -> tuple[bytes, list[str]]:
-    """Return the bytes of the GML file for ``plan``; nothing is lost."""
+    """Return the bytes of the GML file for ``plan``; nothing is lost.
+
+    Raises :class:`FormatError` for the one link id that networkx would not read back.
+    """
+    if "[]" in plan.links:
+        raise FormatError(file, f"link {quoted('[]')}", "GML readers take this id for a list")
     drawn = exports.of_plan(plan)
     numbers = {key: number for number, (key, _) in enumerate(drawn.nodes)}
     lines = ["graph [", "  multigraph 1", *_members(drawn.graph, "  ")]

@@ -14,7 +14,7 @@ from networkx.readwrite.graphml import GraphMLReader
 
 from netsketch.formats import drawing, exports, imports, limits
 from netsketch.formats.drawing import Attributes, Drawing
-from netsketch.formats.errors import FormatError, Loaded
+from netsketch.formats.errors import FormatError, Loaded, shortened
 from netsketch.model import Plan, quoted
 
 NAME: Final = "GraphML"
@@ -27,6 +27,7 @@ def loads(data: bytes, file: str) -> Loaded:
     """Return the plan drawn from a GraphML file. Raises :class:`FormatError`."""
     root = _parse(data, file)
     _prepare_names(root)
+    _check_types(root, file)
     graphs = root.findall(_tag("graph"))
     if root.tag != _tag("graphml") or len(graphs) != 1:
         raise FormatError(file, "", f"not GraphML with one graph: it has {len(graphs)}")
@@ -50,7 +51,8 @@ def _parse(data: bytes, file: str) -> Element:
         reason = f"not XML: {str(error).partition(':')[0]}"
         raise FormatError(file, f"line {line}, column {column + 1}", reason) from error
     except (ValueError, LookupError) as error:
-        raise FormatError(file, "", f"its encoding cannot be read: {error}") from error
+        reason = f"its encoding cannot be read: {shortened(str(error))}"
+        raise FormatError(file, "", reason) from error
     waiting = [(root, 0)]
     while waiting:
         element, depth = waiting.pop()
@@ -68,6 +70,50 @@ def _prepare_names(root: Element) -> None:
     for key in root.iter(_tag("key")):
         if key.get("attr.type") is None and key.get("yfiles.type") is None:
             key.set("attr.type", "string")
+
+
+def _check_types(root: Element, file: str) -> None:
+    """Check every value against the type of its key, and take whole numbers for reals: a
+    cost of 1.5 is then refused with its link, like any other."""
+    types: dict[str | None, tuple[str, str]] = {}
+    for key in root.iter(_tag("key")):
+        kind = key.get("attr.type", "string")
+        if kind not in _TYPES:
+            raise FormatError(file, f"key {quoted(key.get('id', ''))}", f"type {quoted(kind)}")
+        types[key.get("id")] = key.get("attr.name", ""), kind
+        if _TYPES[kind] is float:
+            key.set("attr.type", "double")
+    for element in root.iter():
+        for data in element.findall(_tag("data")):
+            name, kind = types.get(data.get("key"), ("", "string"))
+            if data.text is not None and len(data) == 0 and not _fits(data.text, kind):
+                reason = f"{name}: {quoted(data.text)} is not of type {kind}"
+                raise FormatError(file, _place_of(element), reason)
+
+
+_TYPES: Final[dict[str, type]] = {
+    "string": str,
+    "boolean": bool,
+    **dict.fromkeys(("int", "integer", "long", "float", "double"), float),
+}
+
+
+def _fits(text: str, kind: str) -> bool:
+    if _TYPES[kind] is bool:
+        return text.lower() in ("true", "false", "0", "1")
+    try:
+        _TYPES[kind](text)
+    except ValueError:
+        return False
+    return True
+
+
+def _place_of(element: Element) -> str:
+    """Return the words for a node or an edge."""
+    if element.tag == _tag("edge"):
+        ends = (quoted(element.get(end, "")) for end in ("source", "target"))
+        return "link from {} to {}".format(*ends)
+    return f"node {quoted(element.get('id', ''))}" if element.tag == _tag("node") else "graph"
 
 
 def _settle_direction(graph: Element, file: str) -> bool:
@@ -126,7 +172,8 @@ def _drawing(
     try:
         found = reader.make_graph(graph, *reader.find_graphml_keys(root))
     except (nx.NetworkXException, ValueError, LookupError, TypeError, AttributeError) as error:
-        raise FormatError(file, "", f"not GraphML that can be read: {error}") from error
+        reason = f"not GraphML that can be read: {shortened(str(error))}"
+        raise FormatError(file, "", reason) from error
     defaults = [found.graph.pop(name, {}) for name in ("node_default", "edge_default")]
     for _, node in found.nodes(data=True):
         node.update({**defaults[0], **node})
