@@ -94,14 +94,14 @@ def frame_of(
         links=np.ones(len(contents.links.ids), dtype=bool),
         told=_told(reading),
     )
-    frame.tag_boxes, frame.tag_fits = place_tags(frame.tags, frame.lines, contents.links)
+    frame.tag_boxes, frame.tag_fits = place_tags(frame.tags, frame.lines, contents)
     return frame
 
 
 def relaid(frame: Frame) -> Frame:
     """Return the frame after places in its contents changed."""
     lines = lines_of(frame.contents)
-    boxes, fits = place_tags(frame.tags, lines, frame.contents.links)
+    boxes, fits = place_tags(frame.tags, lines, frame.contents)
     return replace(frame, lines=lines, tag_boxes=boxes, tag_fits=fits)
 
 
@@ -112,7 +112,7 @@ def with_reading(frame: Frame, reading: Reading | None, look: Look) -> Frame:
     frame = replace(frame, marks=marks, look=look, told=_told(reading))
     if frame.told or was_told:
         frame.tags = tags_of(frame.contents, frame.lettering, reading)
-        placed = place_tags(frame.tags, frame.lines, frame.contents.links)
+        placed = place_tags(frame.tags, frame.lines, frame.contents)
         frame.tag_boxes, frame.tag_fits = placed
     return frame
 

@@ -87,12 +87,13 @@ def _fill_plates(painter: QPainter, frame: Frame, marks: Marks, rows: list[int])
             parts.setdefault(marks.hues[index], []).append(share)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing, False)
     painter.setPen(_NO_PEN)
+    edge = 0.6 / frame.scale  # over the outline, which would show on some sides only
     for hue, shares in parts.items():
         chosen, start, end = np.array(shares).T
         boxes = frame.lines.boxes[chosen.astype(np.intp)]
         width = boxes[:, 2] - boxes[:, 0]
-        left, right = boxes[:, 0] + width * start, boxes[:, 0] + width * end
+        left, right = boxes[:, 0] + width * start - edge, boxes[:, 0] + width * end + edge
         painter.setBrush(QColor(frame.look.first_hops[hue % len(frame.look.first_hops)]))
-        filled = np.stack([left, boxes[:, 1], right, boxes[:, 3]], axis=1)
+        filled = np.stack([left, boxes[:, 1] - edge, right, boxes[:, 3] + edge], axis=1)
         draw_shapes(painter, corners_of(filled))
     painter.setRenderHint(QPainter.RenderHint.Antialiasing, frame.still)

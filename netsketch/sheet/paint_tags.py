@@ -47,7 +47,7 @@ def _paint_tried(painter: QPainter, frame: Frame, rows: Rows) -> None:
     base = boxes[:, [0, 3, 2, 3]].reshape(-1, 2, 2)
     painter.setPen(pen_of(frame, frame.look.ink, 1.4))
     painter.drawPath(polylines(base))
-    paint_flags(painter, frame, boxes[:, [2, 3]], 6.0, -1)
+    paint_flags(painter, frame, boxes[:, [2, 3]] + np.array([1.0, 1.0]), 8.0, -1)
 
 
 def paint_flags(painter: QPainter, frame: Frame, corners: Floats, size: float, side: int) -> None:

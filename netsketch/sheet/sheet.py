@@ -30,6 +30,7 @@ from netsketch.sheet.gestures import Gesture, Pan, gesture_for, refusal
 from netsketch.sheet.hits import link_at, node_at
 from netsketch.sheet.keys import press_key
 from netsketch.sheet.look import Look
+from netsketch.sheet.paint_plates import READABLE_NAME
 from netsketch.sheet.painter import paint_frame
 from netsketch.sheet.resting import RestingPicture
 from netsketch.sheet.view import View, fitting
@@ -342,8 +343,17 @@ class Sheet(QWidget):
         rows = frame.contents.nodes.row, frame.contents.links.row
         nodes = [rows[0][key] for key in self.selected_nodes]
         overlay.paint_selection(painter, frame, nodes, [rows[1][k] for k in self.selected_links])
+        if self.view.scale < READABLE_NAME:
+            self._paint_enlarged(painter, frame, nodes)
         if self._gesture is not None:
             self._gesture.paint(painter, frame)
+
+    def _paint_enlarged(self, painter: QPainter, frame: Frame, selected: list[int]) -> None:
+        """Where names are too small to read, show the focus and one selected plate large."""
+        focus = () if self.drawing.reading is None else self.drawing.reading.focus
+        rows = [frame.contents.nodes.row[key] for key in focus if key in frame.contents.nodes.row]
+        for row in dict.fromkeys([*rows, *(selected if len(selected) == 1 else ())]):
+            overlay.paint_enlarged(painter, frame, row)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         if self._fit_wanted:

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from netsketch.readings.reading import Reading
-from netsketch.sheet.contents import Contents, Flags, Floats, Links, Rows
+from netsketch.sheet.contents import Contents, Flags, Floats, Rows
 from netsketch.sheet.lettering import Lettering
 from netsketch.sheet.lines import Lines
 
@@ -69,16 +69,17 @@ def _changed(old: int, new: int) -> str:
     return str(new) if old == new else f"{old} → {new}"
 
 
-def place_tags(tags: Tags, lines: Lines, links: Links) -> tuple[Floats, Flags]:
+def place_tags(tags: Tags, lines: Lines, contents: Contents) -> tuple[Floats, Flags]:
     """Return the rectangles (k, 4) of the tags, and which of them fit their link.
 
     What the trial changes always shows.
     """
-    along, length = lines.along[tags.link], lines.length[tags.link]
-    down = links.down[tags.link]
-    from_tail = _nearest(tags, lines, lines.points[tags.link, 1], links.tail[tags.link])
-    from_head = _nearest(tags, lines, lines.points[tags.link, 2], links.head[tags.link])
+    links, rows = contents.links, tags.link
+    along, length, down = lines.along[rows], lines.length[rows], links.down[rows]
     reach = (np.abs(along[:, 0]) * tags.width + np.abs(along[:, 1]) * TAG_HEIGHT) / 2 + 2
+    tail, head = lines.points[rows, 1], lines.points[rows, 2]
+    from_tail = _nearest(tags, lines, contents, links.tail[rows], tail, reach)
+    from_head = _nearest(tags, lines, contents, links.head[rows], head, reach)
     stagger = links.lane[tags.link] * np.abs(along[:, 1]) * 20.0
     middle = np.where(down, length / 2 - GAP - reach - 3, length / 2 + stagger)
     spots = [tags.spot == _AT_TAIL, tags.spot == _AT_HEAD]
@@ -95,16 +96,20 @@ def place_tags(tags: Tags, lines: Lines, links: Links) -> tuple[Floats, Flags]:
     return boxes, _both(tags, fits) | tags.tried
 
 
-def _nearest(tags: Tags, lines: Lines, start: Floats, node: Rows) -> Floats:
+def _nearest(
+    tags: Tags, lines: Lines, contents: Contents, node: Rows, start: Floats, reach: Floats
+) -> Floats:
     """Return how far along its link a tag clears the plate that the link leaves at
-    ``start``: past the plate's side, or past its upper or lower edge and the band."""
+    ``start``: past the plate's side, or past its upper or lower edge and the band. A knee
+    is clear of everything."""
     along = np.maximum(np.abs(lines.along[tags.link]), 1e-6)
-    past_side = (tags.width / 2 + _CLEAR) / along[:, 0]
     boxes = lines.bars[node]
-    band = np.where(start[:, 1] >= boxes[:, 3] - 0.5, _BAND_ROOM, 0.0)
-    past_edge = (TAG_HEIGHT / 2 + _CLEAR + band) / along[:, 1]
+    banded = (start[:, 1] >= boxes[:, 3] - 0.5) & ~contents.nodes.segment[node]
+    past_side = (tags.width / 2 + _CLEAR) / along[:, 0]
+    past_edge = (TAG_HEIGHT / 2 + _CLEAR + np.where(banded, _BAND_ROOM, 0.0)) / along[:, 1]
     at_side = (start[:, 0] <= boxes[:, 0] + 0.5) | (start[:, 0] >= boxes[:, 2] - 0.5)
-    return np.where(at_side, past_side, past_edge)
+    touching = (start >= boxes[:, :2] - 1).all(axis=1) & (start <= boxes[:, 2:] + 1).all(axis=1)
+    return np.where(touching, np.where(at_side, past_side, past_edge), reach)
 
 
 def _both(tags: Tags, fits: Flags) -> Flags:
