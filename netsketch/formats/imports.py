@@ -33,12 +33,12 @@ def to_loaded(drawing: Drawing, file: str, format_name: str) -> Loaded:
     limits.check_count(len(drawing.edges), limits.LINKS, "edges", file)
     reading = _Import(drawing)
     raw = reading.object()
+    plan, notes = objects.to_plan(raw, file, PLACES)
     limits.check_values(raw["graph"], "graph", file)
     for index, node in enumerate(raw["nodes"]):
         limits.check_values(node, PLACES.node(index, node), file)
     for index, edge in enumerate(raw["edges"]):
         limits.check_values(edge, PLACES.link(index, edge), file)
-    plan, notes = objects.to_plan(raw, file, PLACES)
     return Loaded(plan, (*reading.notes(), *notes), format_name)
 
 
@@ -104,8 +104,9 @@ class _Import:
                 graph[key] = listed
             elif value is not None:
                 self.left_out[key] = None
-        graph.update(self._extra(found, {*SETTINGS_KEYS, "node_default", "edge_default"}))
-        return graph, from_json(found.get("top_extra"), dict) or {}
+        beside = from_json(found.get("top_extra"), dict) or {}
+        graph.update(self._extra(found, set(SETTINGS_KEYS)))
+        return graph, beside
 
     def _extra(self, found: Found, reserved: set[str]) -> dict[str, Any]:
         """Return the keys to keep for a save although they mean nothing here."""
