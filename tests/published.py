@@ -5,9 +5,7 @@ from __future__ import annotations
 from netsketch.model import Link, Plan, Router, Segment, Settings, edits
 
 
-def plan_of(
-    links: str, segments: str = "", style: str = "ospf", alone: str = ""
-) -> Plan:
+def plan_of(links: str, segments: str = "", style: str = "ospf", alone: str = "") -> Plan:
     """Return a plan from "A-B 10" (both ways) and "A-B 10/25" (leaving A / leaving B),
     separated by commas; names in ``segments`` become segments, all others routers.
 

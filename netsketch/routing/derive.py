@@ -18,7 +18,7 @@ import numpy as np
 from netsketch.routing.kernels import Array, compiled
 from netsketch.routing.network import BLOCKED
 
-MANY = 2**62
+MANY = 2**61
 """Path counts at or above this are not exact."""
 
 

@@ -190,9 +190,7 @@ def directed(arcs: str) -> tuple[Network, dict[str, int]]:
     cost[structure.arcs[:, 0]] = [int(c) for _, c in parts]
     up = np.ones(len(parts), np.bool_), np.ones(len(names), np.bool_)
     unknown = np.full(len(parts), np.nan)
-    network = Network(
-        structure, cost, *up, np.zeros(len(names), np.bool_), unknown, unknown, 65535
-    )
+    network = Network(structure, cost, *up, np.zeros(len(names), np.bool_), unknown, unknown, 65535)
     return network, at
 
 

@@ -1,0 +1,162 @@
+"""Random plans through random changes: the incremental state equals one from scratch and
+networkx after each."""
+
+from __future__ import annotations
+
+from itertools import pairwise
+
+import networkx as nx
+import numpy as np
+from hypothesis import HealthCheck, settings
+from hypothesis import strategies as st
+from hypothesis.stateful import RuleBasedStateMachine, initialize, invariant, rule
+from scipy.sparse import coo_array
+from scipy.sparse.csgraph import dijkstra
+
+from netsketch.formats import native
+from netsketch.model import Edit, LinkState, Plan, Trial
+from netsketch.routing import BLOCKED, AllPairs, Network, Routes, compile_plan
+from tests import reference, strategies
+from tests.published import plan_of
+
+
+def arrays_of(network: Network) -> dict[str, list[object]]:
+    """Return everything a network says, for comparison."""
+    s = network.structure
+    return {
+        "vertices": list(s.vertex_ids),
+        "links": list(s.link_ids),
+        **{
+            name: getattr(s, name).tolist()
+            for name in ("indptr", "tail", "head", "link", "in_arc", "first_parallel")
+        },
+        **{
+            name: getattr(network, name).tolist()
+            for name in ("cost", "link_up", "vertex_up", "drained", "weight", "transit")
+        },
+        "known": np.nan_to_num(network.delay, nan=-1).tolist(),
+        "capacity": np.nan_to_num(network.capacity, nan=-1).tolist(),
+    }
+
+
+def scipy_row(network: Network, source: int) -> list[float]:
+    """Return the distances from ``source`` by scipy. Sparse graphs drop zero-cost arcs, so
+    every arc out of a segment gets 1/(2V) instead, which rounding down takes out again."""
+    s = network.structure
+    weight = np.where(s.tail == source, network.weight, network.transit).astype(np.float64)
+    weight[s.tail >= s.routers] += 0.5 / s.vertices
+    use = weight < BLOCKED
+    best: dict[tuple[int, int], float] = {}
+    for tail, head, w in zip(s.tail[use], s.head[use], weight[use], strict=True):
+        best[tail, head] = min(w, best.get((tail, head), np.inf))
+    ends = np.array(list(best) or np.empty((0, 2)), np.int64).reshape(-1, 2).T
+    graph = coo_array((list(best.values()), ends), shape=(s.vertices, s.vertices))
+    return np.floor(dijkstra(graph.tocsr(), indices=source)).tolist()
+
+
+class RandomChanges(RuleBasedStateMachine):
+    """Edits, trials, undo: whatever happens, the answers are those from scratch."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.plan = Plan()
+        self.undo: list[Edit] = []
+
+    @initialize(plan=strategies.plans())
+    def start(self, plan: Plan) -> None:
+        self.plan = plan
+        self.start_bytes = native.dumps(plan)
+        self.network = compile_plan(plan)
+        self.pairs = AllPairs(self.network)
+        self.tried = self.pairs.copy()
+        self.tried.move_to(self.network.laid_over(plan.trial))
+
+    def follow(self, edit: Edit) -> Edit:
+        inverse = self.plan.apply(edit)
+        self.network = self.network.after(self.plan, edit.steps)
+        self.pairs.move_to(self.network)
+        self.tried.move_to(self.network.laid_over(self.plan.trial))
+        return inverse
+
+    @rule(data=st.data(), count=st.integers(1, 4))
+    def change(self, data: st.DataObject, count: int) -> None:
+        """A batch: several edits before the answers are looked at."""
+        for _ in range(count):
+            self.undo.append(self.follow(data.draw(strategies.edits_on(self.plan))))
+
+    @rule()
+    def take_back(self) -> None:
+        if self.undo:
+            self.follow(self.undo.pop())
+
+    @invariant()
+    def answers_are_those_from_scratch(self) -> None:
+        fresh = compile_plan(self.plan)
+        assert arrays_of(self.network) == arrays_of(fresh)
+        assert (self.pairs.distances == AllPairs(fresh).distances).all()
+        in_trial = compile_plan(self.plan, self.plan.trial)
+        assert (self.tried.distances == AllPairs(in_trial).distances).all()
+        tried = reference.with_trial(self.plan, self.plan.trial)
+        self.equals_networkx(in_trial, tried)
+
+    def equals_networkx(self, network: Network, plan: Plan) -> None:
+        s = network.structure
+        graph = reference.graph_of(plan)
+        for source in range(s.routers):
+            routes = Routes(network, source, self.tried.distances[source])
+            found = [np.inf if (c := routes.cost(v)) is None else c for v in range(s.vertices)]
+            assert found == scipy_row(network, source)
+            assert routes.order[0] == source
+        if s.routers:  # one source a step, in turn, for the sets of next hops
+            source = len(self.undo) % s.routers
+            drained = {r.id for r in plan.routers() if r.drained}
+            seen = reference._seen_from(graph, drained, s.vertex_ids[source])
+            rails = {segment.id for segment in plan.segments()}
+            answer = reference.answer(seen, rails, s.vertex_ids[source])
+            routes = Routes(network, source)
+            for target, hops in answer.next_hops.items():
+                assert set(routes.next_hops(s.vertex_of[target])) == hops
+
+    def teardown(self) -> None:
+        while self.undo:
+            self.follow(self.undo.pop())
+        if hasattr(self, "start_bytes"):
+            assert native.dumps(self.plan) == self.start_bytes
+
+
+TestRandomChanges = RandomChanges.TestCase
+TestRandomChanges.settings = settings(
+    max_examples=500 if settings.get_current_profile_name() == "long" else 40,
+    stateful_step_count=32,
+    deadline=None,
+    suppress_health_check=list(HealthCheck),
+)
+
+
+def test_long_costs_need_64_bits() -> None:
+    """Distances beyond 2**31 stay exact (wide IS-IS costs, RFC 5305)."""
+    high = 16_777_214
+    names = [f"r{i}" for i in range(200)]
+    text = ",".join(f"{a}-{b} {high}" for a, b in pairwise(names))
+    network = compile_plan(plan_of(text, style="isis-wide"))
+    assert network.distance_type is np.int64
+    vertex = network.structure.vertex_of
+    assert Routes(network, vertex["r0"]).cost(vertex["r199"]) == 199 * high
+    pairs = AllPairs(network)
+    pairs.move_to(network.laid_over(Trial()))
+    assert pairs.distances[vertex["r199"], vertex["r0"]] == 199 * high
+
+
+def test_changed_pairs_are_counted() -> None:
+    """A chain of four routers: losing the middle link changes the 8 pairs across it."""
+    pairs = AllPairs(compile_plan(plan_of("a-b 1, b-c 1, c-d 1")))
+    update = pairs.move_to(pairs.network.laid_over(Trial((LinkState("b-c"),))))
+    assert (update.changed_pairs, update.changed_arcs) == (8, 2)
+    again = pairs.move_to(pairs.network)
+    assert (again.changed_pairs, again.changed_arcs) == (0, 0)
+
+
+def test_graph_of_reference_has_both_directions() -> None:
+    graph = reference.graph_of(plan_of("a-b 1/2"))
+    assert isinstance(graph, nx.MultiDiGraph)
+    assert {(u, v): d for u, v, d in graph.edges(data="cost")} == {("a", "b"): 1, ("b", "a"): 2}
