@@ -318,12 +318,17 @@ class Plan:
             for link in self.links:
                 ends = self.nodes.get(link.source), self.nodes.get(link.target)
                 check_link(link, *ends, new.cost_style)
+            self._check_trial(self.trial, new.cost_style)
         self.settings = new
 
     def _change_trial(self, step: ChangeTrial) -> None:
         if self.trial != step.old:
             raise PlanError("the trial is not as this edit expects")
-        for change in step.new.changes:
+        self._check_trial(step.new, self.settings.cost_style)
+        self.trial = step.new
+
+    def _check_trial(self, trial: Trial, style: str) -> None:
+        for change in trial.changes:
             if isinstance(change, LinkState | LinkCost):
                 link = self.links.get(change.link)
                 if link is None:
@@ -332,9 +337,9 @@ class Plan:
                     changed = msgspec.structs.replace(
                         link, cost=change.cost, cost_back=change.cost_back
                     )
-                    self._check(changed)
+                    ends = self.nodes.get(link.source), self.nodes.get(link.target)
+                    check_link(changed, *ends, style)
             elif change.node not in self.nodes:
                 raise PlanError(f"trial: there is no router or segment {quoted(change.node)}")
             elif isinstance(change, Drained) and not isinstance(self.nodes[change.node], Router):
                 raise PlanError(f"trial: {quoted(change.node)} is a segment; only routers drain")
-        self.trial = step.new
