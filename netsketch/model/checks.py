@@ -14,7 +14,7 @@ class PlanError(ValueError):
 
 def quoted(text: str, limit: int = 60) -> str:
     """Return ``text`` in quotation marks on one line, cut to ``limit`` characters."""
-    flat = "".join(c if c.isprintable() else " " for c in text)
+    flat = text if text.isprintable() else "".join(c if c.isprintable() else " " for c in text)
     return f"“{flat if len(flat) <= limit else flat[: limit - 1] + '…'}”"
 
 
