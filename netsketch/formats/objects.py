@@ -82,7 +82,7 @@ def to_plan(
     ):
         filled.put(items, place, found)
     filled.lay_trial(_trial(lists["trial"], file, places))
-    return filled.plan, notes
+    return filled.plan, notes + _notes_on_trial(filled.plan.trial, lists["trial"])
 
 
 class _Filling:
@@ -209,6 +209,12 @@ def _notes_on_segments(nodes: Iterable[Node]) -> list[str]:
         if isinstance(node, Segment) and node.extra.get("drained")
     ]
     return [f"only routers drain: no effect at {listed(drained)}"] if drained else []
+
+
+def _notes_on_trial(trial: Trial, raw: list[Any]) -> list[str]:
+    known = [msgspec.to_builtins(change) for change in trial]
+    left = {key for change, found in zip(known, raw, strict=True) for key in found.keys() - change}
+    return [f"left out of the trial: {listed(sorted(map(quoted, left)))}"] if left else []
 
 
 def listed(names: Sequence[str], most: int = 3) -> str:

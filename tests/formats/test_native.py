@@ -148,6 +148,12 @@ def test_the_trial_is_stored_as_a_list_of_changes_and_read_back() -> None:
     assert "trial" not in json.loads(SMALL)["graph"]
 
 
+def test_an_unknown_key_in_the_trial_is_noted() -> None:
+    raw = json.loads(SMALL)
+    raw["graph"]["trial"] = [{"change": "link state", "link": "l1", "by": "me"}]
+    assert loads(json.dumps(raw).encode(), "f").notes == ("left out of the trial: “by”",)
+
+
 # -- segments ---------------------------------------------------------------------------
 
 
