@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable, Iterator, Sequence
-from concurrent.futures import FIRST_COMPLETED, Future, ThreadPoolExecutor, wait
+from concurrent.futures import FIRST_COMPLETED, Future, wait
 from dataclasses import dataclass
 from itertools import combinations, islice
 
@@ -12,7 +12,7 @@ import numpy.typing as npt
 
 from netsketch.model import Plan
 from netsketch.routing import Cancelled, Network, failures, never
-from netsketch.routing.allpairs import THREADS, unreached
+from netsketch.routing.allpairs import THREADS, threads, unreached
 
 Totals = npt.NDArray[np.int64]
 
@@ -163,19 +163,19 @@ def _in_threads(
     stop = np.zeros(1, np.int8)
     todo = iter(slices)
     running: dict[Future[Totals], slice] = {}
-    with ThreadPoolExecutor(THREADS) as pool:
-        while True:
-            for part, first in islice(todo, 2 * THREADS - len(running)):
-                work = pool.submit(_totals, network, lists.part(part.start, part.stop), first, stop)
-                running[work] = part
-            if not running:
-                return
-            finished, _ = wait(running, timeout=0.02, return_when=FIRST_COMPLETED)
-            if cancelled():
-                stop[0] = 1
-                raise Cancelled
-            for work in finished:
-                yield running.pop(work), work.result()
+    while True:
+        for part, first in islice(todo, 2 * THREADS - len(running)):
+            shard = lists.part(part.start, part.stop)
+            running[threads().submit(_totals, network, shard, first, stop)] = part
+        if not running:
+            return
+        finished, _ = wait(running, timeout=0.02, return_when=FIRST_COMPLETED)
+        if cancelled():
+            stop[0] = 1
+            wait(running)
+            raise Cancelled
+        for work in finished:
+            yield running.pop(work), work.result()
 
 
 def _totals(network: Network, lists: _Lists, first: int, stop: npt.NDArray[np.int8]) -> Totals:

@@ -6,6 +6,7 @@ import os
 from collections.abc import Callable
 from concurrent.futures import ThreadPoolExecutor
 from dataclasses import dataclass
+from functools import cache
 
 import numpy as np
 
@@ -70,15 +71,19 @@ def distances_between(
     return rows
 
 
-def over_sources(count: int, work: Callable[[int, int], int | None], chunk: int = 0) -> int:
-    """Call ``work(first, last)`` for slices of ``count`` sources on all processors and
-    return the sum of what it returns."""
-    size = chunk or max(1, -(-count // THREADS))
-    slices = [(i, min(i + size, count)) for i in range(0, count, size)]
+@cache
+def threads() -> ThreadPoolExecutor:
+    """Return the threads over which sources are spread, one a processor."""
+    return ThreadPoolExecutor(THREADS, thread_name_prefix="netsketch-routing")
+
+
+def over_sources(count: int, work: Callable[[int, int], int | None], chunk: int) -> int:
+    """Call ``work(first, last)`` for slices of ``chunk`` of ``count`` sources on all
+    processors and return the sum of what it returns; a single slice stays in this thread."""
+    slices = [(first, min(first + chunk, count)) for first in range(0, count, chunk)]
     if len(slices) <= 1:
         return sum(work(*one) or 0 for one in slices)
-    with ThreadPoolExecutor(THREADS) as pool:
-        return sum(result or 0 for result in pool.map(lambda one: work(*one), slices))
+    return sum(result or 0 for result in threads().map(lambda one: work(*one), slices))
 
 
 class AllPairs:
@@ -179,7 +184,7 @@ class AllPairs:
                     )
                 )  # fmt: skip
 
-            pairs = over_sources(s.routers, work)
+            pairs = over_sources(s.routers, work, chunk=256)
         self.network = network
         return Update(pairs, int(changed.size))
 

@@ -1,0 +1,1 @@
+"""Benchmarks: ``python -m tests.benchmarks`` compares the core with general libraries."""
