@@ -118,8 +118,10 @@ class Drawing:
 
     def to_plan(self, x: float, y: float) -> tuple[float, float]:
         """Return a place on the sheet in the plan's units, without needless decimals."""
-        digits = 1 + max(0, int(np.ceil(np.log10(self.unit))))
-        return round(x / self.unit, digits), round(y / self.unit, digits)
+        digits = int(np.ceil(np.log10(self.unit)))
+        if digits <= 0:
+            return round(x / self.unit), round(y / self.unit)
+        return round(x / self.unit, digits + 1), round(y / self.unit, digits + 1)
 
     def _touch(self) -> None:
         self.stale = True
