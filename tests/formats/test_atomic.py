@@ -24,7 +24,6 @@ def test_a_file_is_made_and_replaced_with_nothing_left_beside_it(tmp_path: Path)
     assert names_in(tmp_path) == ["plan.json"]
 
 
-@pytest.mark.skipif(os.name != "posix", reason="permissions of POSIX")
 def test_permissions_stay_and_a_new_file_has_the_usual_ones(tmp_path: Path) -> None:
     path, other = tmp_path / "plan.json", tmp_path / "usual"
     write_bytes(path, b"one")
@@ -35,7 +34,6 @@ def test_permissions_stay_and_a_new_file_has_the_usual_ones(tmp_path: Path) -> N
     assert stat.S_IMODE(path.stat().st_mode) == 0o640
 
 
-@pytest.mark.skipif(os.name != "posix", reason="symbolic links need rights elsewhere")
 def test_a_symbolic_link_goes_on_pointing_at_its_file(tmp_path: Path) -> None:
     (tmp_path / "far").mkdir()
     target, link = tmp_path / "far" / "plan.json", tmp_path / "link.json"
