@@ -36,7 +36,9 @@ class Drawing:
     ``stale`` tells that the resting picture no longer shows the drawing.
     """
 
-    def __init__(self, changed: Callable[[], None]) -> None:
+    def __init__(self, changed: Callable[[], None], changing: Callable[[], None]) -> None:
+        """``changed`` is called whenever the drawing looks different, ``changing`` before
+        it follows an edit."""
         self.plan = Plan()
         self.reading: Reading | None = None
         self.look: Look = LIGHT
@@ -44,6 +46,7 @@ class Drawing:
         self.unit = 1.0
         self.stale = True
         self._changed = changed
+        self._changing = changing
         self._unsubscribe: Callable[[], None] = lambda: None
         self._frame: Frame | None = None
         self._lifted: tuple[Flags, Flags] | None = None
@@ -128,6 +131,7 @@ class Drawing:
         self._changed()
 
     def _on_change(self, changes: ChangeSet) -> None:
+        self._changing()
         frame = self._frame
         moves = [move for move in map(_moved, changes.steps) if move is not None]
         if frame is not None and len(moves) == len(changes.steps):

@@ -7,7 +7,7 @@ from dataclasses import replace
 
 import numpy as np
 from PySide6.QtCore import QPointF, QRectF, Qt
-from PySide6.QtGui import QColor, QPainter
+from PySide6.QtGui import QColor, QPainter, QPen
 
 from netsketch.sheet.contents import Floats
 from netsketch.sheet.frame import Frame
@@ -114,6 +114,13 @@ def paint_lit_path(painter: QPainter, frame: Frame, lit: Mapping[str, int]) -> N
     painter.setBrush(QColor(frame.look.ink))
     painter.drawPath(polylines(chevrons(frame, rows, points, 8.0), closed=True))
     painter.setBrush(_NO_BRUSH)
+
+
+def paint_focus(painter: QPainter, look: Look, area: QRectF) -> None:
+    """Frame the sheet when it has the keyboard."""
+    painter.setBrush(_NO_BRUSH)
+    painter.setPen(QPen(QColor(look.ink), 2.0))
+    painter.drawRect(area.adjusted(2, 2, -2, -2))
 
 
 def paint_begin(painter: QPainter, look: Look, area: QRectF) -> None:

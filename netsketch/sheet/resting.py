@@ -27,6 +27,8 @@ class RestingPicture:
         if drawing.stale or not fits or (still and not self._still):
             self._still = still
             self._paint(drawing, view, size, ratio, [QRect(QPoint(0, 0), size)], None)
+        elif not ratio.is_integer() and view != self._view:
+            self._paint(drawing, view, size, ratio, [QRect(QPoint(0, 0), size)], None)
         elif view != self._view:
             push = QPoint(round(view.x - self._view.x), round(view.y - self._view.y))
             self._paint(drawing, view, size, ratio, _strips(size, push), push)

@@ -10,6 +10,8 @@ from dataclasses import replace
 from PySide6.QtCore import QEvent, QPointF, QRectF, QSizeF, Qt, QTimer, Signal
 from PySide6.QtGui import (
     QContextMenuEvent,
+    QFocusEvent,
+    QHelpEvent,
     QKeyEvent,
     QMouseEvent,
     QNativeGestureEvent,
@@ -18,22 +20,22 @@ from PySide6.QtGui import (
     QResizeEvent,
     QWheelEvent,
 )
-from PySide6.QtWidgets import QWidget
+from PySide6.QtWidgets import QToolTip, QWidget
 
-from netsketch.model import Edit, LinkCost, edits
+from netsketch.model import Edit, edits
 from netsketch.readings.reading import Reading
 from netsketch.sheet import overlay
 from netsketch.sheet.drawing import Drawing, PlanHolder
-from netsketch.sheet.editors import Accept, WritingLine, cost_hint, cost_text, read_costs
 from netsketch.sheet.frame import Frame
-from netsketch.sheet.gestures import Gesture, Pan, gesture_for, refusal
-from netsketch.sheet.hits import link_at, node_at
+from netsketch.sheet.gestures import refusal
 from netsketch.sheet.keys import press_key
 from netsketch.sheet.look import Look
 from netsketch.sheet.paint_plates import READABLE_NAME
 from netsketch.sheet.painter import paint_frame
+from netsketch.sheet.pointer import Pointer
 from netsketch.sheet.resting import RestingPicture
 from netsketch.sheet.view import View, fitting
+from netsketch.sheet.writing import Writing
 
 TOOLS = ("select", "router", "segment", "link")
 _TOOL_HINTS = {
@@ -43,7 +45,7 @@ _TOOL_HINTS = {
     "link": "Drag from plate to plate to draw links; Esc ends",
 }
 _REST_MS = 100
-_LEFT, _MIDDLE = Qt.MouseButton.LeftButton, Qt.MouseButton.MiddleButton
+_Reason = Qt.FocusReason
 _SHIFT, _CTRL = Qt.KeyboardModifier.ShiftModifier, Qt.KeyboardModifier.ControlModifier
 
 Focus = tuple[str, str]
@@ -65,16 +67,15 @@ class Sheet(QWidget):
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self.drawing = Drawing(self._on_drawing_changed)
+        self.drawing = Drawing(self._on_drawing_changed, self._leave_off)
         self.view = View()
         self.tool = "select"
-        self.space_held = False
         self.selected_nodes: list[str] = []
         self.selected_links: list[str] = []
         self._lit: Mapping[str, int] = {}
-        self._hovered: tuple[int | None, int | None] = (None, None)
-        self._gesture: Gesture | None = None
-        self._writing: WritingLine | None = None
+        self._pointer = Pointer(self)
+        self._writing = Writing(self)
+        self._focus_shown = False
         self._resting = RestingPicture()
         self._rest = QTimer(self, singleShot=True, interval=_REST_MS)
         self._rest.timeout.connect(self.update)
@@ -89,7 +90,7 @@ class Sheet(QWidget):
 
     def set_document(self, document: PlanHolder | None) -> None:
         """Show another document, whole; ``None`` shows an empty sheet."""
-        self.cancel_gesture()
+        self._leave_off()
         self._lit = {}
         self.drawing.set_document(document)
         self.select()
@@ -118,11 +119,16 @@ class Sheet(QWidget):
         """The whole drawing at the present scale."""
         return replace(self.drawing.frame, scale=self.view.scale)
 
+    def _leave_off(self) -> None:
+        """Drop what was begun on a plan that is about to look different."""
+        self._writing.close()
+        self._pointer.cancel()
+
     def _on_drawing_changed(self) -> None:
         nodes, links = self.drawing.plan.nodes, self.drawing.plan.links
         kept_nodes = [key for key in self.selected_nodes if key in nodes]
         kept_links = [key for key in self.selected_links if key in links]
-        self._hovered = (None, None)
+        self._pointer.node = self._pointer.link = None
         self.select(kept_nodes, kept_links)
         self.update()
 
@@ -156,7 +162,7 @@ class Sheet(QWidget):
 
     def show_thing(self, key: str) -> None:
         """Bring a node or link into view, and large enough to read."""
-        at = self._middle_of(key)
+        at = self.middle_of(key)
         if at is None:
             return
         size = QSizeF(self.size())
@@ -167,7 +173,8 @@ class Sheet(QWidget):
         elif not inner.adjusted(margin, margin, -margin, -margin).contains(at):
             self.show_view(self.view.centred(at, size))
 
-    def _middle_of(self, key: str) -> QPointF | None:
+    def middle_of(self, key: str) -> QPointF | None:
+        """Return the middle of a node or link on the sheet; ``None`` for no such thing."""
         contents, lines = self.drawing.frame.contents, self.drawing.frame.lines
         if key in contents.nodes.row:
             row = contents.nodes.row[key]
@@ -196,7 +203,7 @@ class Sheet(QWidget):
             self.select(_toggled(self.selected_nodes, key), self.selected_links)
         else:
             self.select([key])
-            self.focus_asked.emit(self._focus_of_node(key))
+            self.focus_asked.emit(self.focus_of_node(key))
 
     def click_link(self, key: str, adding: bool) -> None:
         """Select a link, or add it to or take it from the selection; ask its focus."""
@@ -211,7 +218,8 @@ class Sheet(QWidget):
         self.select()
         self.focus_asked.emit(None)
 
-    def _focus_of_node(self, key: str) -> Focus:
+    def focus_of_node(self, key: str) -> Focus:
+        """Return a node as a focus."""
         segment = self.drawing.frame.contents.nodes.segment
         row = self.drawing.frame.contents.nodes.row[key]
         return ("segment" if segment[row] else "router"), key
@@ -228,9 +236,9 @@ class Sheet(QWidget):
         if tool not in TOOLS:
             raise ValueError(f"no such tool: {tool}")
         if tool != self.tool:
-            self._end_gesture()
+            self._pointer.cancel()
             self.tool = tool
-            self._show_cursor()
+            self._pointer.show_cursor()
             self.tool_changed.emit(tool)
             self.hint.emit(_TOOL_HINTS[tool])
 
@@ -259,64 +267,29 @@ class Sheet(QWidget):
 
     def begin_rename(self, key: str) -> None:
         """Open a line over a node to write its name in."""
-        node = self.drawing.plan.nodes[key]
-        frame = self.drawing.frame
-        box = frame.lines.boxes[frame.contents.nodes.row[key]].tolist()
-        self._write(node.name, QRectF(QPointF(*box[:2]), QPointF(*box[2:])), self._rename_of(key))
-        self.hint.emit("Type the name; Enter keeps it, Esc drops it")
+        self._pointer.cancel()
+        self._writing.begin_name(key)
 
     def begin_cost_edit(self, key: str) -> None:
         """Open a line over a link to write its cost in: the trial's cost where the trial
         has one, else the plan's."""
-        plan = self.drawing.plan
-        link, middle = plan.links[key], self._middle_of(key)
-        assert middle is not None
-        text = cost_text(link, edits.costs_in_trial(plan, key), plan)
-        self._write(text, QRectF(middle, middle), self._costs_of(key))
-        self.hint.emit(cost_hint(link, plan))
-
-    def _rename_of(self, key: str) -> Accept:
-        return lambda text: self.propose(edits.rename(self.drawing.plan, key, text.strip()))
-
-    def _costs_of(self, key: str) -> Accept:
-        def accept(text: str) -> None:
-            plan = self.drawing.plan
-            costs = read_costs(text, plan.links[key], plan)
-            tried = plan.trial.find(LinkCost, key) is not None
-            change = edits.try_costs if tried else edits.set_costs
-            self.propose(change(plan, key, *costs))
-
-        return accept
-
-    def _write(self, text: str, over: QRectF, accept: Accept) -> None:
-        self._end_gesture()
-        if self._writing is not None:
-            self._writing.close_line()
-        self._writing = WritingLine(self, text, self.view.rect_to_window(over), accept)
-        self._writing.refused.connect(self.hint)
-        self._writing.closed.connect(self._on_written)
-
-    def _on_written(self) -> None:
-        self._writing = None
-        self.hint.emit("")
-        self.setFocus()
+        self._pointer.cancel()
+        middle = self.middle_of(key)
+        if middle is not None:
+            self._writing.begin_cost(key, middle)
 
     def cancel_gesture(self) -> None:
         """Drop what is under way: writing, a gesture, or else the tool in hand."""
-        if self._writing is not None:
-            self._writing.close_line()
-        elif self._gesture is not None:
-            self._end_gesture()
+        if self._writing.line is not None:
+            self._writing.close()
+        elif self._pointer.cancel():
             self.hint.emit("")
         elif self.tool != "select":
             self.set_tool("select")
 
-    def _end_gesture(self) -> None:
-        if self._gesture is not None:
-            self._gesture.cancel()
-            self._gesture = None
-            self._show_cursor()
-            self.update()
+    def hold_space(self, held: bool) -> None:
+        """While the space bar is held a drag pans."""
+        self._pointer.hold_space(held)
 
     # -- events -----------------------------------------------------------------------
 
@@ -332,6 +305,9 @@ class Sheet(QWidget):
                 overlay.paint_begin(painter, self.look, QRectF(self.rect()))
             painter.setTransform(self.view.transform(), True)
             self._paint_overlay(painter)
+            if self._focus_shown:
+                painter.resetTransform()
+                overlay.paint_focus(painter, self.look, QRectF(self.rect()))
 
     def _paint_overlay(self, painter: QPainter) -> None:
         frame = self.frame
@@ -339,14 +315,14 @@ class Sheet(QWidget):
         if lifted is not None:
             paint_frame(painter, lifted)
         overlay.paint_lit_path(painter, frame, self._lit)
-        overlay.paint_hover(painter, frame, *self._hovered)
+        overlay.paint_hover(painter, frame, self._pointer.node, self._pointer.link)
         rows = frame.contents.nodes.row, frame.contents.links.row
         nodes = [rows[0][key] for key in self.selected_nodes]
         overlay.paint_selection(painter, frame, nodes, [rows[1][k] for k in self.selected_links])
         if self.view.scale < READABLE_NAME:
             self._paint_enlarged(painter, frame, nodes)
-        if self._gesture is not None:
-            self._gesture.paint(painter, frame)
+        if self._pointer.gesture is not None:
+            self._pointer.gesture.paint(painter, frame)
 
     def _paint_enlarged(self, painter: QPainter, frame: Frame, selected: list[int]) -> None:
         """Where names are too small to read, show the focus and one selected plate large."""
@@ -361,43 +337,16 @@ class Sheet(QWidget):
         super().resizeEvent(event)
 
     def mousePressEvent(self, event: QMouseEvent) -> None:
-        at = event.position()
-        if self._gesture is not None:
-            return
-        if event.button() == _MIDDLE or (event.button() == _LEFT and self.space_held):
-            self._gesture = Pan(self, at)
-        elif event.button() == _LEFT:
-            adding = bool(event.modifiers() & (_SHIFT | _CTRL))
-            self._gesture = gesture_for(self, at, adding)
-        self._show_cursor()
+        self._pointer.press(event)
 
     def mouseMoveEvent(self, event: QMouseEvent) -> None:
-        if self._gesture is not None:
-            self._gesture.move(event.position())
-            return
-        self._hover(event.position())
+        self._pointer.move(event.position())
 
     def mouseReleaseEvent(self, event: QMouseEvent) -> None:
-        gesture = self._gesture
-        if gesture is not None and event.button() in (_LEFT, _MIDDLE):
-            if gesture.end(event.position()) and self._gesture is gesture:
-                self._gesture = None
-                self._hover(event.position())
-            self.update()
+        self._pointer.release(event)
 
     def mouseDoubleClickEvent(self, event: QMouseEvent) -> None:
-        if event.button() != _LEFT or self.tool != "select" or self._gesture is not None:
-            self.mousePressEvent(event)
-            return
-        place = self.view.to_sheet(event.position())
-        node, link = node_at(self.frame, place), link_at(self.frame, place)
-        contents = self.drawing.frame.contents
-        if node is not None:
-            self.begin_rename(contents.nodes.ids[node])
-        elif link is not None:
-            self.begin_cost_edit(contents.links.ids[link])
-        else:
-            self.draw_node(place)
+        self._pointer.double_click(event)
 
     def wheelEvent(self, event: QWheelEvent) -> None:
         """A wheel zooms at the pointer, with Shift it pans sideways; two fingers pan, or
@@ -413,6 +362,10 @@ class Sheet(QWidget):
         event.accept()
 
     def event(self, event: QEvent) -> bool:
+        if isinstance(event, QHelpEvent):
+            words = self._pointer.words(QPointF(event.pos()))
+            QToolTip.showText(event.globalPos(), words, self)
+            return True
         if (
             isinstance(event, QNativeGestureEvent)
             and event.gestureType() == Qt.NativeGestureType.ZoomNativeGesture
@@ -423,31 +376,14 @@ class Sheet(QWidget):
 
     def contextMenuEvent(self, event: QContextMenuEvent) -> None:
         if event.reason() == QContextMenuEvent.Reason.Mouse:
-            focus = self._select_under(QPointF(event.pos()))
+            focus = self._pointer.select_under(QPointF(event.pos()))
         else:
             focus = self._selected_focus()
         self.menu_asked.emit(focus, event.globalPos())
 
-    def _select_under(self, at: QPointF) -> Focus | None:
-        """Select what is under the pointer unless it is among the selected already."""
-        place = self.view.to_sheet(at)
-        node, link = node_at(self.frame, place), link_at(self.frame, place)
-        contents = self.drawing.frame.contents
-        if node is not None:
-            key = contents.nodes.ids[node]
-            if key not in self.selected_nodes:
-                self.select([key])
-            return self._focus_of_node(key)
-        if link is not None:
-            key = contents.links.ids[link]
-            if key not in self.selected_links:
-                self.select((), [key])
-            return "link", key
-        return None
-
     def _selected_focus(self) -> Focus | None:
         if self.selected_nodes:
-            return self._focus_of_node(self.selected_nodes[-1])
+            return self.focus_of_node(self.selected_nodes[-1])
         return ("link", self.selected_links[-1]) if self.selected_links else None
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
@@ -460,38 +396,22 @@ class Sheet(QWidget):
         super().keyReleaseEvent(event)
 
     def leaveEvent(self, event: QEvent) -> None:
-        self._set_hovered((None, None))
+        self._pointer.hover(None)
         super().leaveEvent(event)
 
-    def hold_space(self, held: bool) -> None:
-        """While the space bar is held a drag pans."""
-        self.space_held = held
-        self._show_cursor()
+    def focusInEvent(self, event: QFocusEvent) -> None:
+        by_key = event.reason() in (_Reason.TabFocusReason, _Reason.BacktabFocusReason)
+        self._show_focus(by_key)
+        super().focusInEvent(event)
 
-    def _hover(self, at: QPointF) -> None:
-        place = self.view.to_sheet(at)
-        node = node_at(self.frame, place)
-        link = link_at(self.frame, place) if node is None and self.tool == "select" else None
-        self._set_hovered((node, link))
+    def focusOutEvent(self, event: QFocusEvent) -> None:
+        self._pointer.hold_space(False)
+        self._show_focus(False)
+        super().focusOutEvent(event)
 
-    def _set_hovered(self, hovered: tuple[int | None, int | None]) -> None:
-        if hovered != self._hovered:
-            self._hovered = hovered
-            self.update()
-        self._show_cursor()
-
-    def _show_cursor(self) -> None:
-        self.setCursor(self._cursor())
-
-    def _cursor(self) -> Qt.CursorShape:
-        if self._gesture is not None:
-            return self._gesture.cursor
-        if self.space_held:
-            return Qt.CursorShape.OpenHandCursor
-        if self.tool != "select":
-            return Qt.CursorShape.CrossCursor
-        on_something = self._hovered != (None, None)
-        return Qt.CursorShape.PointingHandCursor if on_something else Qt.CursorShape.ArrowCursor
+    def _show_focus(self, shown: bool) -> None:
+        self._focus_shown = shown
+        self.update()
 
 
 def _toggled(keys: list[str], key: str) -> list[str]:

@@ -67,7 +67,7 @@ class Hands:
 
     def at(self, key: str) -> QPoint:
         """Return the pixel in the middle of a node or link."""
-        middle = self.sheet._middle_of(key)
+        middle = self.sheet.middle_of(key)
         assert middle is not None
         return self.sheet.view.to_window(middle).toPoint()
 
@@ -114,7 +114,7 @@ class Hands:
 
     def write(self, text: str, end: Qt.Key = Qt.Key.Key_Return) -> None:
         """Type into the open line and end with a key."""
-        line = self.sheet._writing
+        line = self.sheet._writing.line
         assert line is not None
         line.selectAll()
         self.bot.keyClick(line, Qt.Key.Key_Delete)

@@ -3,8 +3,9 @@
 from __future__ import annotations
 
 import pytest
-from PySide6.QtCore import QPoint, Qt
+from PySide6.QtCore import QPoint, QPointF, Qt
 
+from netsketch.model import edits
 from tests.sheet.conftest import SHIFT, Hands, near
 
 pytestmark = pytest.mark.gui
@@ -168,3 +169,36 @@ def test_a_right_click_selects_and_asks_for_a_menu(hands: Hands) -> None:
 def test_no_such_tool_is_an_error(hands: Hands) -> None:
     with pytest.raises(ValueError, match="no such tool: saw"):
         hands.sheet.set_tool("saw")
+
+
+def test_an_undo_in_the_middle_of_a_drag_ends_it(hands: Hands) -> None:
+    hands.document.apply(edits.add_router(hands.plan, 600, 300))
+    hands.drag(hands.at("r5"), hands.at("r5") + QPoint(-60, 0), drop=False)
+    hands.document.undo()
+    hands.move(QPoint(100, 100), Qt.MouseButton.LeftButton)
+    hands.bot.mouseRelease(hands.sheet, Qt.MouseButton.LeftButton, pos=QPoint(100, 100))
+    assert hands.proposed == []
+    assert "r5" not in hands.sheet.frame.contents.nodes.ids
+
+
+def test_an_undo_in_the_middle_of_writing_closes_the_line(hands: Hands) -> None:
+    hands.document.apply(edits.add_router(hands.plan, 600, 300))
+    hands.sheet.begin_rename("r5")
+    hands.document.undo()
+    assert hands.sheet._writing.line is None
+    assert hands.proposed == []
+
+
+def test_resting_on_a_thing_tells_about_it(hands: Hands) -> None:
+    hands.document.apply(edits.rename(hands.plan, "r1", "<b>Quay</b>"))
+    hands.document.apply(edits.toggle_drained(hands.plan, ["r1"]))
+    hands.document.apply(edits.toggle_down(hands.plan, links=["l2"]))
+    words = hands.sheet._pointer.words
+    told = words(QPointF(hands.at("r1")))
+    assert "&lt;b&gt;Quay&lt;/b&gt;" in told
+    assert "router, North, drained" in told
+    told = words(QPointF(hands.at("l2") + QPoint(14, 24)))
+    assert "cost 25 from Shed" in told
+    assert "down" in told
+    assert "cost 0" not in words(QPointF(hands.at("l3")))
+    assert words(QPointF(880, 580)) == ""

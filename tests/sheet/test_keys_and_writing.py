@@ -93,8 +93,8 @@ def test_a_double_click_writes_costs(
 
 def test_a_line_shows_both_costs_where_they_differ(hands: Hands) -> None:
     hands.sheet.begin_cost_edit("l2")
-    assert hands.sheet._writing is not None
-    assert hands.sheet._writing.text() == "10/25"
+    assert hands.sheet._writing.line is not None
+    assert hands.sheet._writing.line.text() == "10/25"
     assert "1 to 65535" in hands.hints[-1]
     assert "from Quay / from Shed" in hands.hints[-1]
 
@@ -105,7 +105,7 @@ def test_a_line_shows_both_costs_where_they_differ(hands: Hands) -> None:
 def test_bad_costs_stay_open_and_say_why(hands: Hands, typed: str) -> None:
     hands.sheet.begin_cost_edit("l1")
     hands.write(typed)
-    assert hands.sheet._writing is not None
+    assert hands.sheet._writing.line is not None
     assert "l1" in hands.hints[-1]
     assert len(hands.hints[-1]) < 200
     assert hands.proposed == []
@@ -129,8 +129,8 @@ def test_a_cost_the_trial_holds_is_changed_in_the_trial(hands: Hands) -> None:
 
 def test_leaving_a_line_keeps_what_was_typed(hands: Hands) -> None:
     hands.sheet.begin_rename("r1")
-    assert hands.sheet._writing is not None
-    hands.bot.keyClicks(hands.sheet._writing, "Pier")
+    assert hands.sheet._writing.line is not None
+    hands.bot.keyClicks(hands.sheet._writing.line, "Pier")
     hands.sheet.setFocus()
     hands.bot.waitUntil(lambda: hands.plan.nodes["r1"].name == "Pier")
 
@@ -141,3 +141,12 @@ def test_keys_zoom_and_fit(hands: Hands) -> None:
     assert hands.sheet.view.scale == pytest.approx(scale * 1.2)
     hands.press(Qt.Key.Key_0)
     assert hands.sheet.view.scale == pytest.approx(scale)
+
+
+def test_the_keyboard_focus_shows_when_tab_brings_it(hands: Hands) -> None:
+    hands.sheet.clearFocus()
+    before = hands.sheet.grab().toImage()
+    hands.sheet.setFocus(Qt.FocusReason.TabFocusReason)
+    assert hands.sheet.grab().toImage() != before
+    hands.sheet.clearFocus()
+    assert hands.sheet.grab().toImage() == before
