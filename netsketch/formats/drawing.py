@@ -6,12 +6,14 @@ Drawing into its file; :mod:`imports` and :mod:`exports` know what the attribute
 
 from __future__ import annotations
 
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import msgspec
-import networkx as nx
 
 from netsketch.formats.attributes import text
+
+if TYPE_CHECKING:
+    import networkx as nx
 
 Attributes = dict[str, Any]
 

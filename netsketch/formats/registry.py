@@ -8,7 +8,7 @@ from collections.abc import Callable
 from pathlib import Path
 from typing import Final, NamedTuple
 
-from netsketch.formats import atomic, gml, graphml, limits, native, nodelink, strict_json
+from netsketch.formats import atomic, limits, native, nodelink, strict_json
 from netsketch.formats.errors import FormatError, Loaded
 from netsketch.model import Plan
 
@@ -25,8 +25,8 @@ class FormatName(NamedTuple):
 FORMATS: Final = (
     FormatName(native.NAME, (".netsketch.json", ".json"), True, True),
     FormatName(nodelink.NAME, (".json",), True, False),
-    FormatName(graphml.NAME, (".graphml", ".xml"), True, True),
-    FormatName(gml.NAME, (".gml",), True, True),
+    FormatName("GraphML", (".graphml", ".xml"), True, True),
+    FormatName("GML", (".gml",), True, True),
 )
 
 
@@ -57,11 +57,23 @@ def _read_json(data: bytes, file: str) -> Loaded:
     return nodelink.from_parsed(raw, file)
 
 
+def _read_graphml(data: bytes, file: str) -> Loaded:
+    from netsketch.formats import graphml  # loads networkx, which native files do without
+
+    return graphml.loads(data, file)
+
+
+def _read_gml(data: bytes, file: str) -> Loaded:
+    from netsketch.formats import gml
+
+    return gml.loads(data, file)
+
+
 _READERS: Final[dict[str, Callable[[bytes, str], Loaded]]] = {
     ".json": _read_json,
-    ".graphml": graphml.loads,
-    ".xml": graphml.loads,
-    ".gml": gml.loads,
+    ".graphml": _read_graphml,
+    ".xml": _read_graphml,
+    ".gml": _read_gml,
 }
 
 
@@ -71,8 +83,8 @@ def _reader_for(data: bytes) -> Callable[[bytes, str], Loaded] | None:
     if start.startswith(b"{"):
         return _read_json
     if start.startswith(b"<"):
-        return graphml.loads
-    return gml.loads if re.search(rb"^\s*graph\s*\[", start, re.MULTILINE) else None
+        return _read_graphml
+    return _read_gml if re.search(rb"^\s*graph\s*\[", start, re.MULTILINE) else None
 
 
 def _bytes_of(path: Path) -> bytes:
@@ -116,8 +128,12 @@ def write(plan: Plan, path: Path, original: bytes | None = None) -> list[str]:
     if suffix == ".json":
         data = _native_bytes(plan, original)
     elif suffix in (".graphml", ".xml"):
+        from netsketch.formats import graphml
+
         data, notes = graphml.dumps(plan, str(path))
     elif suffix == ".gml":
+        from netsketch.formats import gml
+
         data, notes = gml.dumps(plan, str(path))
     else:
         raise FormatError(str(path), "", f"not a format that can be written: {_known()}")

@@ -1,30 +1,4 @@
-"""Results as readings: what the sheet shows about the focus, as plain data."""
+"""Results as readings: what the sheet shows about the focus, as plain data.
 
-from netsketch.readings.outward import effect, outward
-from netsketch.readings.path import path
-from netsketch.readings.reading import (
-    FirstHop,
-    LinkMark,
-    PlateMark,
-    PlateRole,
-    Reading,
-    ReadingKind,
-    Travel,
-    TravelRole,
-    letter,
-)
-
-__all__ = [
-    "FirstHop",
-    "LinkMark",
-    "PlateMark",
-    "PlateRole",
-    "Reading",
-    "ReadingKind",
-    "Travel",
-    "TravelRole",
-    "effect",
-    "letter",
-    "outward",
-    "path",
-]
+Import from the modules: ``reading`` needs nothing, the others load the routing core.
+"""

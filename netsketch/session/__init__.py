@@ -1,7 +1,4 @@
-"""An open document: the plan, its trial, the edit history, its answers, background jobs."""
+"""An open document: the plan, its trial, the edit history, its answers, background jobs.
 
-from netsketch.session.answers import Answers, Outward, Path
-from netsketch.session.document import Document
-from netsketch.session.jobs import Jobs
-
-__all__ = ["Answers", "Document", "Jobs", "Outward", "Path"]
+Import from the modules: the window shows before ``answers`` loads the routing core.
+"""

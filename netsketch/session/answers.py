@@ -11,7 +11,6 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from netsketch import readings
 from netsketch.analysis import (
     Ledger,
     RouteRow,
@@ -21,7 +20,9 @@ from netsketch.analysis import (
     forwarding_table,
 )
 from netsketch.model import ChangeSet, LinkState, Plan, Router, Segment, Trial, edits
-from netsketch.readings import Reading
+from netsketch.readings import outward as outward_reading
+from netsketch.readings import path as path_reading
+from netsketch.readings.reading import Reading
 from netsketch.routing import AllPairs, Network, Routes, ShareOfLink, compile_plan, never
 from netsketch.session.document import Document
 
@@ -78,7 +79,7 @@ class Answers:
             trial = network.laid_over(Trial((LinkState("l1"),)))
             ledger = PairStates().ledger(network, trial, never)
             before, after = Routes(network, 0), Routes(trial, 0)
-            readings.effect(before, after, changed_destinations(before, after), "")
+            outward_reading.effect(before, after, changed_destinations(before, after), "")
             forwarding_table(after)
             self.ready = len(ledger) > 0
 
@@ -122,13 +123,13 @@ class Answers:
     def outward(self, router: str) -> Outward:
         """Return the source tree and the forwarding table of a router in the trial."""
         routes = self.routes(router)
-        reading = readings.outward(routes, self._label(router))
+        reading = outward_reading.outward(routes, self._label(router))
         return Outward(reading, forwarding_table(routes), self.changed(router))
 
     def effect(self, router: str) -> Reading:
         """Return what the trial changes for a router."""
         before, after = self.routes(router, planned=True), self.routes(router)
-        return readings.effect(before, after, self.changed(router), self._label(router))
+        return outward_reading.effect(before, after, self.changed(router), self._label(router))
 
     def path(self, source: str, target: str) -> Path:
         """Return the way from a router to a router or segment in the trial. The reading
@@ -139,7 +140,7 @@ class Answers:
         back = self.routes(target) if is_router else None
         labels = self._label(source), self._label(target)
         return Path(
-            readings.path(out, back, vertex, labels),
+            path_reading.path(out, back, vertex, labels),
             source,
             target,
             out.cost(vertex),

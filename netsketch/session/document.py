@@ -8,7 +8,6 @@ from pathlib import Path
 from netsketch import formats
 from netsketch.model import ChangeSet, Edit, Plan
 from netsketch.session.history import History
-from netsketch.session.layout import place_missing
 
 Listener = Callable[[ChangeSet], None]
 
@@ -52,7 +51,10 @@ class Document:
             document.path = path
         else:
             document.suggested = path.with_name(path.name.split(".")[0])
-        place_missing(document.plan)
+        if any(node.x is None for node in document.plan.nodes):
+            from netsketch.session.layout import place_missing  # loads networkx
+
+            place_missing(document.plan)
         return document
 
     @property

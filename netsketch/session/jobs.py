@@ -7,8 +7,6 @@ from collections.abc import Callable
 from dataclasses import dataclass, field
 from typing import Any
 
-from netsketch.routing import Cancelled
-
 Task = Callable[[Callable[[], bool]], Any]
 Done = Callable[[str, int, Any], None]
 
@@ -91,9 +89,7 @@ class Jobs:
         result: Any
         try:
             result = job.task(job.cancel.is_set)
-        except Cancelled:
-            return
-        except Exception as error:  # handed to whoever asked
+        except Exception as error:  # handed to whoever asked, unless that was to stop
             result = error
         if not job.cancel.is_set():
             job.done(job.name, job.revision, result)

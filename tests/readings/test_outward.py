@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from netsketch import readings
 from netsketch.model import edits
-from netsketch.readings import Reading, letter
+from netsketch.readings import outward as readings
+from netsketch.readings.reading import Reading, letter
 from netsketch.routing import Routes, compile_plan
 from tests.published import plan_of, rfc2328_figure_2
 

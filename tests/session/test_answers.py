@@ -8,7 +8,9 @@ from hypothesis import strategies as st
 from netsketch.analysis import RouteRow
 from netsketch.model import Plan, edits
 from netsketch.routing import NextHop, never
-from netsketch.session import Answers, Document, answers
+from netsketch.session import answers
+from netsketch.session.answers import Answers
+from netsketch.session.document import Document
 from tests import reference, strategies
 from tests.published import rfc2328_figure_2
 

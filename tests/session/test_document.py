@@ -10,7 +10,7 @@ from hypothesis import strategies as st
 
 from netsketch.formats import FormatError, native
 from netsketch.model import ChangeSet, Plan, PlanError, edits
-from netsketch.session import Document
+from netsketch.session.document import Document
 from tests import strategies
 from tests.published import rfc2328_figure_2
 

@@ -9,7 +9,7 @@ from typing import Any
 import pytest
 
 from netsketch.routing import Cancelled
-from netsketch.session import Jobs
+from netsketch.session.jobs import Jobs
 
 
 @pytest.fixture
