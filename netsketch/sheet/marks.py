@@ -8,11 +8,12 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass, field
+from functools import cached_property
 
 import numpy as np
 
 from netsketch.readings.reading import LinkMark, PlateMark, Reading, Travel
-from netsketch.sheet.contents import Contents, Flags, Floats
+from netsketch.sheet.contents import Contents, Flags, Floats, Rows
 from netsketch.sheet.look import Look, cividis
 
 DASHES: dict[str, tuple[float, ...]] = {"way back": (3.0, 1.6), "before": (0.9, 1.1)}
@@ -33,7 +34,7 @@ class Stroke:
     edge: float = 0.0
 
 
-@dataclass(slots=True)
+@dataclass
 class Strands:
     """All strands of one stroke: link rows, offsets to the side, directions."""
 
@@ -41,8 +42,17 @@ class Strands:
     offsets: list[float] = field(default_factory=list)
     directions: list[int] = field(default_factory=list)
 
+    @cached_property
+    def arrays(self) -> tuple[Rows, Floats, Rows]:
+        """The same as arrays, once all strands are laid."""
+        return (
+            np.array(self.rows, dtype=np.intp),
+            np.array(self.offsets, dtype=float),
+            np.array(self.directions, dtype=np.intp),
+        )
 
-@dataclass(slots=True)
+
+@dataclass
 class Marks:
     """What a reading says, by row. ``links`` and ``nodes`` flag what it names; the other
     flags tell the nodes of one role."""
@@ -59,6 +69,22 @@ class Marks:
     target: Flags
     cut_off: Flags
     moved: Flags
+
+    @cached_property
+    def shares(self) -> dict[int, tuple[Rows, Floats, Floats]]:
+        """For each hue the plates reached by its first hop: their rows, and where along
+        the plate its part begins and ends, 0 to 1."""
+        parts: dict[int, list[tuple[int, float, float]]] = {}
+        for row, mark in self.plates.items():
+            count = len(mark.letters)
+            for place, index in enumerate(mark.letters):
+                part = (row, place / count, (place + 1) / count)
+                parts.setdefault(self.hues[index], []).append(part)
+        found = {}
+        for hue, listed in parts.items():
+            rows, start, end = zip(*listed, strict=True)
+            found[hue] = np.array(rows, dtype=np.intp), np.array(start), np.array(end)
+        return found
 
 
 def marks_of(reading: Reading, contents: Contents, look: Look) -> Marks:

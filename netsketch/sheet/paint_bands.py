@@ -28,11 +28,11 @@ def paint_bands(painter: QPainter, frame: Frame) -> None:
     """Paint the bands of the plates that the reading names."""
     if frame.marks is None:
         return
+    if frame.scale < VISIBLE:
+        _fill_plates(painter, frame, frame.marks)
+        return
     plates = frame.marks.plates
     rows = [row for row in np.flatnonzero(frame.nodes).tolist() if row in plates]
-    if frame.scale < VISIBLE:
-        _fill_plates(painter, frame, frame.marks, rows)
-        return
     painter.setFont(frame.lettering.band.font)
     for row in rows:
         cells = _cells(frame, frame.marks, plates[row])
@@ -77,22 +77,17 @@ def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell], mo
         x += need + spare
 
 
-def _fill_plates(painter: QPainter, frame: Frame, marks: Marks, rows: list[int]) -> None:
+def _fill_plates(painter: QPainter, frame: Frame, marks: Marks) -> None:
     """Where bands could not be seen, colour the plates themselves, one path a colour."""
-    parts: dict[int, list[tuple[int, float, float]]] = {}
-    for row in rows:
-        letters = marks.plates[row].letters
-        for place, index in enumerate(letters):
-            share = (row, place / len(letters), (place + 1) / len(letters))
-            parts.setdefault(marks.hues[index], []).append(share)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing, False)
     painter.setPen(_NO_PEN)
     edge = 0.6 / frame.scale  # over the outline, which would show on some sides only
-    for hue, shares in parts.items():
-        chosen, start, end = np.array(shares).T
-        boxes = frame.lines.boxes[chosen.astype(np.intp)]
+    for hue, (rows, start, end) in marks.shares.items():
+        shown = frame.nodes[rows]
+        boxes = frame.lines.boxes[rows[shown]]
         width = boxes[:, 2] - boxes[:, 0]
-        left, right = boxes[:, 0] + width * start - edge, boxes[:, 0] + width * end + edge
+        left = boxes[:, 0] + width * start[shown] - edge
+        right = boxes[:, 0] + width * end[shown] + edge
         painter.setBrush(QColor(frame.look.first_hops[hue % len(frame.look.first_hops)]))
         filled = np.stack([left, boxes[:, 1] - edge, right, boxes[:, 3] + edge], axis=1)
         draw_shapes(painter, corners_of(filled))

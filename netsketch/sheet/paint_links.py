@@ -49,8 +49,10 @@ def stroke_path(painter: QPainter, frame: Frame, pen: QPen, rows: Rows, points: 
 
 
 def _halves(frame: Frame, rows: Rows, points: Floats) -> Floats:
-    """Return both sides of the gap, tail sides first, as (2k, 3, 2)."""
-    gap = np.minimum(GAP, frame.lines.length[rows] / 3)[:, None] * frame.lines.along[rows]
+    """Return both sides of the gap, first ends first, as (2k, 3, 2)."""
+    body = points[:, 2] - points[:, 1]
+    share = np.minimum(GAP / np.maximum(frame.lines.length[rows], 1e-9), 1 / 3)
+    gap = body * share[:, None]
     middle = (points[:, 1] + points[:, 2]) / 2
     return np.concatenate(
         [
@@ -78,8 +80,7 @@ def _paint_lines(painter: QPainter, frame: Frame) -> None:
 
 
 def _paint_strands(painter: QPainter, frame: Frame, stroke: Stroke, strands: Strands) -> None:
-    rows = np.array(strands.rows, dtype=np.intp)
-    offsets, directions = np.array(strands.offsets), np.array(strands.directions)
+    rows, offsets, directions = strands.arrays
     shown = frame.links[rows]
     if not shown.any():
         return

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 from PySide6.QtCore import QPointF, QRectF, Qt
-from PySide6.QtGui import QBrush, QColor, QPainter, QPainterPath
+from PySide6.QtGui import QBrush, QColor, QPainter
 
 from netsketch.sheet.contents import Flags, Rows
 from netsketch.sheet.frame import Frame
@@ -95,10 +95,9 @@ def _draw_outlines(painter: QPainter, frame: Frame, rows: Rows, grown: float = 0
         draw_shapes(painter, corners_of(boxes))
         painter.setRenderHint(QPainter.RenderHint.Antialiasing, frame.still)
         return
-    path = QPainterPath()
     for left, top, right, bottom in boxes.tolist():
-        path.addRoundedRect(left, top, right - left, bottom - top, _ROUND + grown, _ROUND + grown)
-    painter.drawPath(path)
+        shape = QRectF(left, top, right - left, bottom - top)
+        painter.drawRoundedRect(shape, _ROUND + grown, _ROUND + grown)
 
 
 def _paint_down(painter: QPainter, frame: Frame, rows: Rows, fill: str, edge: str) -> None:

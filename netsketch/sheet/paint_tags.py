@@ -9,7 +9,7 @@ from PySide6.QtGui import QColor, QPainter
 from netsketch.sheet.contents import Floats, Rows
 from netsketch.sheet.frame import Frame
 from netsketch.sheet.paint_links import pen_of
-from netsketch.sheet.paths import polylines, rectangles
+from netsketch.sheet.paths import corners_of, draw_shapes, polylines
 
 READABLE = 0.5
 """The least scale at which tags are painted."""
@@ -27,7 +27,7 @@ def _paint_texts(painter: QPainter, frame: Frame, rows: Rows) -> None:
     tags, look, face = frame.tags, frame.look, frame.lettering.tag
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(QColor(look.tag))
-    painter.drawPath(rectangles(frame.tag_boxes[rows]))
+    draw_shapes(painter, corners_of(frame.tag_boxes[rows]))
     painter.setFont(face.font)
     named = np.ones(len(rows), bool) if frame.marks is None else frame.marks.links[tags.link[rows]]
     for colour, chosen in ((look.faded, rows[~named]), (look.ink, rows[named])):

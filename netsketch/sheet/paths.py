@@ -17,7 +17,7 @@ from netsketch.sheet.contents import Floats
 _ELEMENT = np.dtype([("kind", ">i4"), ("x", ">f8"), ("y", ">f8")])
 _MOVE_TO, _LINE_TO = 0, 1
 _WINDING = 1
-_BUNCH = 200
+_BUNCH = 64
 
 
 def polylines(points: Floats, closed: bool = False) -> QPainterPath:
