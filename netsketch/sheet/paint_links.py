@@ -8,7 +8,7 @@ from PySide6.QtGui import QColor, QPainter, QPen
 
 from netsketch.sheet.contents import Floats, Rows
 from netsketch.sheet.frame import Frame
-from netsketch.sheet.marks import Strands, Stroke
+from netsketch.sheet.marks import Marks, Strands, Stroke
 from netsketch.sheet.paths import draw_shapes, polylines
 from netsketch.sheet.tags import GAP
 
@@ -23,8 +23,7 @@ def paint_links(painter: QPainter, frame: Frame) -> None:
     painter.setBrush(_NO_BRUSH)
     _paint_lines(painter, frame)
     if frame.marks is not None:
-        for stroke, strands in frame.marks.strands.items():
-            _paint_strands(painter, frame, stroke, strands)
+        _paint_strands(painter, frame, frame.marks)
     _paint_breaks(painter, frame)
 
 
@@ -79,23 +78,33 @@ def _paint_lines(painter: QPainter, frame: Frame) -> None:
             stroke_path(painter, frame, pen, rows, frame.lines.points[rows])
 
 
-def _paint_strands(painter: QPainter, frame: Frame, stroke: Stroke, strands: Strands) -> None:
+def _paint_strands(painter: QPainter, frame: Frame, marks: Marks) -> None:
+    """Paint the edges of all strands, then their colours, then their arrowheads, so that
+    no strand hides what its neighbour says."""
+    laid = [(stroke, *_laid(frame, strands)) for stroke, strands in marks.strands.items()]
+    for stroke, rows, points in laid:
+        if stroke.edge:
+            pen = pen_of(frame, frame.look.ink, stroke.width + 2 * stroke.edge, 2.4)
+            stroke_path(painter, frame, pen, rows, points)
+    for stroke, rows, points in laid:
+        pen = pen_of(frame, stroke.colour, stroke.width, 1.6)
+        if stroke.dash:
+            pen.setDashPattern(list(stroke.dash))
+        stroke_path(painter, frame, pen, rows, points)
+    for stroke, rows, points in laid:
+        _paint_chevrons(painter, frame, stroke, rows, points)
+
+
+def _laid(frame: Frame, strands: Strands) -> tuple[Rows, Floats]:
+    """Return the links of those strands that are shown, and the lines along them in the
+    direction of travel."""
     rows, offsets, directions = strands.arrays
     shown = frame.links[rows]
-    if not shown.any():
-        return
-    rows, offsets, directions = rows[shown], offsets[shown], directions[shown]
-    points = frame.lines.points[rows] + (frame.lines.across[rows] * offsets[:, None])[:, None, :]
-    if stroke.edge:
-        pen = pen_of(frame, frame.look.ink, stroke.width + 2 * stroke.edge, 2.4)
-        stroke_path(painter, frame, pen, rows, points)
-    pen = pen_of(frame, stroke.colour, stroke.width, 1.6)
-    if stroke.dash:
-        pen.setDashPattern(list(stroke.dash))
-    backward = directions < 0
+    rows, backward = rows[shown], directions[shown] < 0
+    aside = frame.lines.across[rows] * offsets[shown][:, None]
+    points = frame.lines.points[rows] + aside[:, None, :]
     points[backward] = points[backward][:, ::-1]
-    stroke_path(painter, frame, pen, rows, points)
-    _paint_chevrons(painter, frame, stroke, rows, points)
+    return rows, points
 
 
 def _paint_chevrons(
