@@ -28,7 +28,7 @@ class WritingLine(QLineEdit):
 
     def __init__(self, parent: QWidget, text: str, over: QRectF, accept: Accept) -> None:
         super().__init__(text, parent)
-        self._before, self._accept = text, accept
+        self._sheet, self._before, self._accept = parent, text, accept
         self._open = True
         self.setAlignment(Qt.AlignmentFlag.AlignCenter)
         width = max(over.width(), 90.0)
@@ -56,6 +56,9 @@ class WritingLine(QLineEdit):
         """Close without handing anything over."""
         if self._open:
             self._open = False
+            if self.hasFocus():
+                # Before hiding, which would hand the focus on as if Tab were pressed.
+                self._sheet.setFocus()
             self.hide()
             self.closed.emit()
             self.deleteLater()

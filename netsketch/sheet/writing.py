@@ -50,7 +50,6 @@ class Writing:
     def _on_closed(self) -> None:
         self.line = None
         self._sheet.hint.emit("")
-        self._sheet.setFocus()
 
     def _keep_name(self, key: str, text: str) -> None:
         self._sheet.propose(edits.rename(self._sheet.drawing.plan, key, text.strip()))

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import pytest
 from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QLineEdit
 
 from netsketch.model import edits
 from tests.sheet.conftest import SHIFT, Hands
@@ -150,3 +151,17 @@ def test_the_keyboard_focus_shows_when_tab_brings_it(hands: Hands) -> None:
     assert hands.sheet.grab().toImage() != before
     hands.sheet.clearFocus()
     assert hands.sheet.grab().toImage() == before
+
+
+def test_writing_hands_the_focus_back_but_takes_it_from_nobody(hands: Hands) -> None:
+    field = QLineEdit(hands.sheet)
+    field.show()
+    before = hands.sheet.grab().toImage()
+    hands.sheet.begin_rename("r1")
+    hands.write("Quay")
+    assert hands.sheet.hasFocus()
+    assert hands.sheet.grab().toImage() == before
+    hands.sheet.begin_rename("r1")
+    field.setFocus()
+    assert hands.sheet._writing.line is None
+    assert field.hasFocus()
