@@ -1,0 +1,142 @@
+"""Opening and saving: nothing is lost, and a bad file leaves the open plan as it is."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from functools import partial
+from pathlib import Path
+from typing import Any
+
+from PySide6.QtCore import QObject, Signal
+
+from netsketch.formats import FormatError
+from netsketch.session.document import Document
+from netsketch.window import questions
+from netsketch.window.desk import Desk
+from netsketch.window.questions import Questions
+from netsketch.window.relay import Relay
+from netsketch.window.settings import Settings
+
+DEMOS = Path(__file__).resolve().parents[2] / "demo_topologies"
+
+
+def demo_files() -> list[tuple[str, Path]]:
+    """Return the demo networks that came with the program: (name, file)."""
+    found = sorted(DEMOS.glob("*.netsketch.json"), key=lambda path: path.stat().st_size)
+    return [(path.name.split(".")[0].replace("-", " ").capitalize(), path) for path in found]
+
+
+class Files(QObject):
+    """The File menu."""
+
+    noted = Signal(str)
+    """What an import assumed or left out, or a save could not carry."""
+    recent_changed = Signal()
+    state_changed = Signal(str)
+
+    def __init__(
+        self, desk: Desk, relay: Relay, settings: Settings, ask: Questions, parent: QObject
+    ) -> None:
+        super().__init__(parent)
+        self._desk, self._relay, self._settings, self.ask = desk, relay, settings, ask
+
+    def new(self) -> None:
+        """Start an empty plan."""
+        if self.may_leave():
+            self._desk.set_document(Document.new())
+
+    def open(self) -> None:
+        """Ask for a file and open it."""
+        if self.may_leave():
+            path = self.ask.file_to_open(self._folder())
+            if path is not None:
+                self._read(path)
+
+    def open_path(self, path: Path) -> None:
+        """Open a file that was already chosen (recent, demo, command line)."""
+        if self.may_leave():
+            self._read(path)
+
+    def _read(self, path: Path) -> None:
+        self.state_changed.emit(f"Opening {path.name}")
+        self._relay.submit(
+            "open", lambda cancelled: Document.open(path), partial(self._opened, path)
+        )
+
+    def _opened(self, path: Path, result: Any) -> None:
+        self.state_changed.emit("")
+        if isinstance(result, FormatError):
+            self._settings.drop_recent(path)
+            self.recent_changed.emit()
+            self.ask.refuse(f"{result}\n\nThe plan on the sheet is as it was.")
+        elif isinstance(result, Exception):
+            raise result
+        else:
+            self._desk.set_document(result)
+            self._settings.add_recent(path)
+            self.recent_changed.emit()
+            if result.notes:
+                self.noted.emit("\n".join(result.notes))
+
+    def _folder(self) -> Path:
+        path = self._desk.document.path
+        if path is not None:
+            return path.parent
+        recent = self._settings.recent
+        return recent[0].parent if recent else Path.home()
+
+    def save(self) -> bool:
+        """Save to the document's file, asking for one where there is none; return whether
+        the plan is saved."""
+        path = self._desk.document.path
+        return self._write(path) if path is not None else self.save_as()
+
+    def save_as(self) -> bool:
+        """Ask for a file and save to it; return whether the plan is saved."""
+        document = self._desk.document
+        name = document.path or document.suggested or Path("plan")
+        stem = name.name.removesuffix(".netsketch.json") + ".netsketch.json"
+        folder = name.parent if name.is_absolute() else self._folder()
+        path = self.ask.file_to_save(folder / stem)
+        return path is not None and self._write(path)
+
+    def _write(self, path: Path) -> bool:
+        return self._guarded(lambda: self._desk.document.save(path), path)
+
+    def _guarded(self, write: Callable[[], list[str] | None], path: Path) -> bool:
+        try:
+            notes = write()
+        except FormatError as error:
+            self.ask.refuse(f"{error}\n\nNothing was saved; the plan is still here.")
+            return False
+        if notes:
+            self.noted.emit("\n".join(notes))
+        if self._desk.document.path == path:
+            self._settings.add_recent(path)
+            self.recent_changed.emit()
+        self._desk.plan_changed.emit()
+        return True
+
+    def save_picture(self) -> None:
+        """Ask for a file and save the sheet with its reading as a picture."""
+        from netsketch.sheet.picture import write_picture
+        from netsketch.window.theme import look_named
+
+        document = self._desk.document
+        stem = document.title.removesuffix(".netsketch.json") + ".svg"
+        path = self.ask.file_for_picture(self._folder() / stem)
+        if path is not None:
+            look = look_named(self._settings.look)
+            reading = self._desk.reading
+            self._guarded(lambda: write_picture(document.plan, reading, path, look), path)
+
+    def may_leave(self) -> bool:
+        """Return whether the open document may be left: it is saved, or thrown away on
+        purpose."""
+        document = self._desk.document
+        if not document.is_modified:
+            return True
+        answer = self.ask.unsaved(document.title)
+        if answer == questions.SAVE:
+            return self.save()
+        return answer == questions.THROW_AWAY

@@ -1,0 +1,86 @@
+"""The window in the sheet's colours: a palette and a little style, light and dark."""
+
+from __future__ import annotations
+
+from PySide6.QtCore import Qt
+from PySide6.QtGui import QColor, QPalette
+from PySide6.QtWidgets import QApplication
+
+from netsketch.sheet.look import DARK, LIGHT, Look
+
+_ROLE = QPalette.ColorRole
+
+
+def look_named(name: str) -> Look:
+    """Return the look for "light", "dark" or "system"; a system that does not say which
+    it prefers gets the light one."""
+    if name == "system":
+        dark = QApplication.styleHints().colorScheme() == Qt.ColorScheme.Dark
+        return DARK if dark else LIGHT
+    return DARK if name == "dark" else LIGHT
+
+
+def apply_look(look: Look) -> None:
+    """Give the whole application this look."""
+    app = QApplication.instance()
+    assert isinstance(app, QApplication)
+    app.setStyle("Fusion")
+    app.setPalette(_palette(look))
+    app.setStyleSheet(_style(look))
+
+
+def _palette(look: Look) -> QPalette:
+    palette = QPalette()
+    for role, colour in (
+        (_ROLE.Window, look.paper),
+        (_ROLE.Base, look.plate),
+        (_ROLE.AlternateBase, look.paper),
+        (_ROLE.Button, look.plate),
+        (_ROLE.ToolTipBase, look.ink),
+        (_ROLE.ToolTipText, look.paper),
+        (_ROLE.WindowText, look.ink),
+        (_ROLE.Text, look.ink),
+        (_ROLE.ButtonText, look.ink),
+        (_ROLE.PlaceholderText, look.soft),
+        (_ROLE.Highlight, look.ink),
+        (_ROLE.HighlightedText, look.paper),
+        (_ROLE.Link, look.path),
+        (_ROLE.Mid, look.hairline),
+        (_ROLE.Dark, look.hairline),
+    ):
+        palette.setColor(role, QColor(colour))
+    for role in (_ROLE.WindowText, _ROLE.Text, _ROLE.ButtonText):
+        palette.setColor(QPalette.ColorGroup.Disabled, role, QColor(look.faded))
+    return palette
+
+
+def _style(look: Look) -> str:
+    return f"""
+        QMainWindow::separator {{ background: {look.hairline}; width: 1px; height: 1px; }}
+        QToolTip {{ color: {look.paper}; background: {look.ink}; border: none; padding: 3px; }}
+        QMenuBar, QStatusBar, QToolBar {{ background: {look.paper}; color: {look.ink}; }}
+        QToolBar {{ border: none; border-bottom: 1px solid {look.hairline}; spacing: 4px; }}
+        QToolButton {{ padding: 4px 8px; border: 1px solid transparent; border-radius: 4px; }}
+        QToolButton:hover {{ border-color: {look.hairline}; }}
+        QToolButton:checked {{ background: {look.ink}; color: {look.paper}; }}
+        QToolButton:focus {{ border-color: {look.ink}; }}
+        QStatusBar {{ border-top: 1px solid {look.hairline}; }}
+        QStatusBar::item {{ border: none; }}
+        QHeaderView::section {{
+            background: {look.paper}; color: {look.ink}; border: none;
+            border-bottom: 1px solid {look.hairline}; padding: 4px 6px;
+        }}
+        QTableView {{
+            border: 1px solid {look.hairline}; gridline-color: {look.hairline};
+            background: {look.plate};
+        }}
+        QLabel[role="title"] {{ font-size: 17px; font-weight: bold; }}
+        QLabel[role="soft"] {{ color: {look.soft}; }}
+        QLabel[role="heading"] {{ font-weight: bold; padding-top: 8px; }}
+        QFrame[role="chip"] {{
+            border: 1px solid {look.ink}; border-radius: 11px; background: {look.plate};
+        }}
+        QFrame[role="strip"] {{ border-top: 1px solid {look.hairline}; }}
+        QFrame[role="notice"] {{ background: {look.ink}; }}
+        QFrame[role="notice"] QLabel {{ color: {look.paper}; }}
+    """
