@@ -77,9 +77,8 @@ def place_tags(tags: Tags, lines: Lines, contents: Contents) -> tuple[Floats, Fl
     links, rows = contents.links, tags.link
     along, length, down = lines.along[rows], lines.length[rows], links.down[rows]
     reach = (np.abs(along[:, 0]) * tags.width + np.abs(along[:, 1]) * TAG_HEIGHT) / 2 + 2
-    tail, head = lines.points[rows, 1], lines.points[rows, 2]
-    from_tail = _nearest(tags, lines, contents, links.tail[rows], tail, reach)
-    from_head = _nearest(tags, lines, contents, links.head[rows], head, reach)
+    from_tail = _nearest(tags, lines, contents, links.tail[rows], lines.points[rows, 1], along)
+    from_head = _nearest(tags, lines, contents, links.head[rows], lines.points[rows, 2], -along)
     stagger = links.lane[tags.link] * np.abs(along[:, 1]) * 20.0
     middle = np.where(down, length / 2 - GAP - reach - 3, length / 2 + stagger)
     spots = [tags.spot == _AT_TAIL, tags.spot == _AT_HEAD]
@@ -97,19 +96,19 @@ def place_tags(tags: Tags, lines: Lines, contents: Contents) -> tuple[Floats, Fl
 
 
 def _nearest(
-    tags: Tags, lines: Lines, contents: Contents, node: Rows, start: Floats, reach: Floats
+    tags: Tags, lines: Lines, contents: Contents, node: Rows, start: Floats, out: Floats
 ) -> Floats:
     """Return how far along its link a tag clears the plate that the link leaves at
-    ``start``: past the plate's side, or past its upper or lower edge and the band. A knee
-    is clear of everything."""
-    along = np.maximum(np.abs(lines.along[tags.link]), 1e-6)
+    ``start`` in the direction ``out``: past the plate's side, or past its upper or lower
+    edge and the band, whichever comes first. A knee is clear of everything."""
     boxes = lines.bars[node]
-    banded = (start[:, 1] >= boxes[:, 3] - 0.5) & ~contents.nodes.segment[node]
-    past_side = (tags.width / 2 + _CLEAR) / along[:, 0]
-    past_edge = (TAG_HEIGHT / 2 + _CLEAR + np.where(banded, _BAND_ROOM, 0.0)) / along[:, 1]
-    at_side = (start[:, 0] <= boxes[:, 0] + 0.5) | (start[:, 0] >= boxes[:, 2] - 0.5)
+    room = np.stack([tags.width, np.full(len(node), TAG_HEIGHT)], axis=1) / 2 + _CLEAR
+    ahead = np.where(out > 0, boxes[:, 2:] - start, start - boxes[:, :2])
+    ahead[:, 1] += np.where((out[:, 1] > 0) & ~contents.nodes.segment[node], _BAND_ROOM, 0.0)
+    clear = ((np.maximum(ahead, 0) + room) / np.maximum(np.abs(out), 1e-6)).min(axis=1)
     touching = (start >= boxes[:, :2] - 1).all(axis=1) & (start <= boxes[:, 2:] + 1).all(axis=1)
-    return np.where(touching, np.where(at_side, past_side, past_edge), reach)
+    reach = (np.abs(out) * room).sum(axis=1)
+    return np.asarray(np.where(touching, clear, reach))
 
 
 def _both(tags: Tags, fits: Flags) -> Flags:

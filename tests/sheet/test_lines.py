@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 import numpy as np
 import pytest
 from PySide6.QtCore import QPointF, QRectF
@@ -97,14 +99,26 @@ def test_the_end_at_a_segment_shows_no_cost() -> None:
     assert "5" in shown(frame)
 
 
-def test_tags_keep_off_the_plates_of_their_link() -> None:
-    for distance in range(40, 320, 7):
-        for costs in ((10, 10), (10, 16_000)):
-            frame = framed(pair(costs, distance=distance))
+@pytest.mark.parametrize("costs", [(10, 10), (10, 16_000)])
+def test_tags_keep_off_the_plates_and_bands_of_their_link(costs: tuple[int, int]) -> None:
+    seen = 0
+    for turn in np.radians(range(0, 360, 7)).tolist():
+        for distance in range(40, 320, 30):
+            plan = pair(costs, distance=distance)
+            x, y = distance * math.cos(turn), distance * math.sin(turn)
+            plan.apply(edits.move(plan, {"b": (x, y)}))
+            frame = framed(plan)
+            seen += int(frame.tag_fits.sum())
             for box in frame.tag_boxes[frame.tag_fits]:
-                for plate in frame.lines.boxes:
-                    apart = box[2] <= plate[0] or plate[2] <= box[0]
-                    assert apart, (distance, costs)
+                assert not any(overlap(box, plate) for plate in frame.lines.boxes), (x, y)
+    assert seen > 200
+
+
+def overlap(tag: np.ndarray, plate: np.ndarray) -> bool:
+    """Return whether a tag touches a plate or the band along its lower edge."""
+    left, top, right, bottom = tag
+    across = left < plate[2] and plate[0] < right
+    return bool(across and top < plate[3] + 17 and plate[1] < bottom)
 
 
 def test_a_short_link_shows_only_what_fits() -> None:
