@@ -65,6 +65,8 @@ class Drawing:
 
     def set_reading(self, reading: Reading | None, look: Look) -> None:
         """Show another reading, in these colours."""
+        if reading is self.reading and look is self.look:
+            return
         self.reading, self.look = reading, look
         if self._frame is not None:
             self._frame = with_reading(self._frame, reading, look)

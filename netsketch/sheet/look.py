@@ -104,7 +104,7 @@ LIGHT = Look(
     band_texts=tuple(text_on(colour) for colour in _DAY_HOPS),
     path="#0072B2",
     way_back="#B34E00",
-    before="#B34E00",
+    before="#5F5E5A",
     after="#0072B2",
 )
 
@@ -122,6 +122,6 @@ DARK = Look(
     band_texts=tuple(text_on(colour) for colour in _NIGHT_HOPS),
     path="#56B4E9",
     way_back="#E69F00",
-    before="#E69F00",
+    before="#A9A69D",
     after="#56B4E9",
 )
