@@ -1,0 +1,1 @@
+"""The commands: the window's answers without a screen, one module a command."""
