@@ -1,0 +1,192 @@
+"""The ledger panel: every pair that the trial changes, before and after."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QTimer, Signal
+from PySide6.QtGui import QGuiApplication
+from PySide6.QtWidgets import (
+    QAbstractItemView,
+    QComboBox,
+    QHBoxLayout,
+    QHeaderView,
+    QLabel,
+    QLineEdit,
+    QPushButton,
+    QTableView,
+    QVBoxLayout,
+    QWidget,
+)
+
+from netsketch.model import Plan
+from netsketch.reports.tables import csv_text
+from netsketch.window.ledger_model import HEADERS, OUTCOMES, LedgerModel
+from netsketch.window.questions import Questions
+
+if TYPE_CHECKING:
+    from netsketch.analysis.ledger import Ledger
+
+ROWS_AT_ONCE = 400
+MOST_COPIED = 100_000
+_WIDTHS = (150, 150, 100, 90, 90, 70, 260, 260)
+
+
+class LedgerPanel(QWidget):
+    """A table over the ledger with a filter, and ways to take it away."""
+
+    pair_asked = Signal(str, str)
+    hint = Signal(str)
+
+    def __init__(self, ask: Questions, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._ask = ask
+        self._title = "ledger"
+        self.model = LedgerModel(self)
+        self.totals = QLabel()
+        self.filter = QLineEdit()
+        self.filter.setPlaceholderText("Filter by router")
+        self.filter.setAccessibleName("Filter the ledger by router")
+        self.filter.setClearButtonEnabled(True)
+        self.outcome = QComboBox()
+        self.outcome.addItems(["every outcome", *OUTCOMES])
+        self.outcome.setAccessibleName("Filter the ledger by outcome")
+        self.copy = QPushButton("Copy as CSV")
+        self.copy.setToolTip("Copy the rows shown to the clipboard")
+        self.export = QPushButton("Save as CSV…")
+        self.export.setToolTip("Write the rows shown to a file")
+        self.table = _table(self.model)
+        self._lay_out()
+        self.filter.textChanged.connect(self._refilter)
+        self.outcome.currentIndexChanged.connect(self._refilter)
+        self.copy.clicked.connect(self._copy)
+        self.export.clicked.connect(self._export)
+        self.table.selectionModel().currentRowChanged.connect(self._ask_pair)
+        self._writer = _CsvWriter(self)
+        self.set_ledger(None, Plan())
+
+    def _lay_out(self) -> None:
+        top = QHBoxLayout()
+        title = QLabel("Ledger")
+        title.setProperty("role", "heading")
+        top.addWidget(title)
+        top.addWidget(self.totals, 1)
+        for widget in (self.filter, self.outcome, self.copy, self.export):
+            top.addWidget(widget)
+        column = QVBoxLayout(self)
+        column.setContentsMargins(12, 4, 12, 8)
+        column.addLayout(top)
+        column.addWidget(self.table, 1)
+
+    def set_ledger(self, ledger: Ledger | None, plan: Plan) -> None:
+        """Show another ledger; ``None`` where there is no trial."""
+        self._writer.stop()
+        self._title = plan.settings.name or "ledger"
+        self.model.show(ledger, plan)
+        self._show_totals()
+
+    def show_computing(self) -> None:
+        """Say that the ledger is on its way; the rows of before stay until then."""
+        self.totals.setText("computing…")
+
+    def _show_totals(self) -> None:
+        ledger = self.model.ledger
+        rows = self.model.rowCount()
+        for button in (self.copy, self.export):
+            button.setEnabled(rows > 0)
+        if ledger is None:
+            self.totals.setText("Nothing is tried: take a link or a router down to see what moves.")
+        elif not len(ledger):
+            self.totals.setText("The trial changes no pair of routers.")
+        else:
+            shown = "" if rows == len(ledger) else f"{rows:,} shown of "
+            self.totals.setText(
+                f"{shown}{len(ledger):,} pairs: {ledger.moved:,} moved, "
+                f"{ledger.cut_off:,} cut off, {ledger.restored:,} restored"
+            )
+
+    def _refilter(self) -> None:
+        self._writer.stop()
+        self.model.set_filter(self.filter.text(), self.outcome.currentIndex() - 1)
+        self._show_totals()
+
+    def _ask_pair(self) -> None:
+        row = self.table.currentIndex().row()
+        if row >= 0:
+            self.pair_asked.emit(*self.model.pair(row))
+
+    def _copy(self) -> None:
+        rows = self.model.rowCount()
+        if rows > MOST_COPIED:
+            self.hint.emit(f"{rows:,} rows are too many for the clipboard: save them as CSV")
+            return
+        self._writer.start(rows, None)
+
+    def _export(self) -> None:
+        path = self._ask.file_for_table(Path.home() / f"{self._title}-ledger.csv")
+        if path is not None:
+            self._writer.start(self.model.rowCount(), path)
+
+
+class _CsvWriter(QTimer):
+    """Turns the rows into CSV a few at a time, so that the window stays awake."""
+
+    def __init__(self, panel: LedgerPanel) -> None:
+        super().__init__(panel, interval=0)
+        self._panel = panel
+        self._parts: list[str] = []
+        self._next = self._rows = 0
+        self._path: Path | None = None
+        self.timeout.connect(self._step)
+
+    def start(self, rows: int, path: Path | None) -> None:  # type: ignore[override]
+        """Write ``rows`` rows to ``path``, or to the clipboard."""
+        self._parts, self._next = [csv_text(HEADERS, [])], 0
+        self._rows, self._path = rows, path
+        super().start()
+
+    def _step(self) -> None:
+        rows = self._panel.model.csv_rows(self._next, self._next + ROWS_AT_ONCE)
+        text = csv_text((), rows)
+        self._parts.append(text.removeprefix("\r\n"))
+        self._next += ROWS_AT_ONCE
+        if self._next < self._rows:
+            self._panel.hint.emit(f"Writing CSV: {self._next:,} of {self._rows:,} rows")
+            return
+        self.stop()
+        self._finish("".join(self._parts))
+
+    def _finish(self, text: str) -> None:
+        from netsketch.formats import FormatError
+        from netsketch.formats.atomic import write_bytes
+
+        if self._path is None:
+            QGuiApplication.clipboard().setText(text)
+            self._panel.hint.emit(f"{self._rows:,} rows copied as CSV")
+            return
+        try:
+            write_bytes(self._path, text.encode("utf-8-sig"))
+        except FormatError as error:
+            self._panel.hint.emit(str(error))
+        else:
+            self._panel.hint.emit(f"{self._rows:,} rows written to {self._path.name}")
+
+
+def _table(model: LedgerModel) -> QTableView:
+    table = QTableView()
+    table.setModel(model)
+    table.setAccessibleName("Ledger")
+    table.setSortingEnabled(True)
+    table.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
+    table.setSelectionMode(QAbstractItemView.SelectionMode.SingleSelection)
+    table.setShowGrid(False)
+    table.setTabKeyNavigation(False)
+    table.verticalHeader().hide()
+    table.verticalHeader().setSectionResizeMode(QHeaderView.ResizeMode.Fixed)
+    table.verticalHeader().setDefaultSectionSize(24)
+    table.horizontalHeader().setStretchLastSection(True)
+    table.sortByColumn(0, table.horizontalHeader().sortIndicatorOrder().AscendingOrder)
+    for column, width in enumerate(_WIDTHS):
+        table.setColumnWidth(column, width)
+    return table

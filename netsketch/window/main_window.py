@@ -1,0 +1,257 @@
+"""The main window: puts the parts together and decides nothing itself."""
+
+# ruff: noqa: N802  (Qt names the event handlers)
+
+from __future__ import annotations
+
+from functools import partial
+from typing import TYPE_CHECKING
+
+from PySide6.QtCore import QPoint, Qt
+from PySide6.QtGui import QCloseEvent
+from PySide6.QtWidgets import QDockWidget, QLabel, QMainWindow, QMenu, QToolBar, QVBoxLayout, QWidget
+
+from netsketch.session.jobs import Jobs
+from netsketch.sheet import Sheet
+from netsketch.window import actions, commands
+from netsketch.window.desk import Desk, Focus
+from netsketch.window.files import Files, demo_files
+from netsketch.window.inspector import Inspector
+from netsketch.window.ledger_panel import LedgerPanel
+from netsketch.window.notice import Notice
+from netsketch.window.questions import Questions
+from netsketch.window.relay import Relay
+from netsketch.window.settings import Settings
+from netsketch.window.theme import apply_look, look_named
+from netsketch.window.trial_strip import TrialStrip
+
+if TYPE_CHECKING:
+    from netsketch.analysis.ledger import Ledger
+
+_RIGHT, _BOTTOM = Qt.DockWidgetArea.RightDockWidgetArea, Qt.DockWidgetArea.BottomDockWidgetArea
+
+
+class MainWindow(QMainWindow):
+    """Sheet in the middle, inspector on the right, ledger and trial strip below."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.setObjectName("netsketch")
+        self.resize(1440, 900)
+        self.settings = Settings()
+        self.ask = Questions(self)
+        self.jobs = Jobs()
+        self.relay = Relay(self.jobs, self)
+        self.desk = Desk(self.relay, self)
+        self.files = Files(self.desk, self.relay, self.settings, self.ask, self)
+        self.sheet = Sheet()
+        self.inspector = Inspector()
+        self.ledger = LedgerPanel(self.ask)
+        self.strip = TrialStrip()
+        self.notice = Notice()
+        self.state = QLabel()
+        self.zoom = QLabel()
+        self.actions_by_id, self.menus = actions.build(self, commands.handlers(self))
+        self._lay_out()
+        self._connect()
+        self._fill_recent()
+        self.set_look(self.settings.look)
+        self.restoreGeometry(self.settings.bytes_of("geometry"))
+        self.restoreState(self.settings.bytes_of("state"))
+        self.ledger_dock.hide()
+        self._show_document()
+        self._show_answer()
+
+    # -- assembly -----------------------------------------------------------------------
+
+    def _lay_out(self) -> None:
+        middle = QWidget()
+        column = QVBoxLayout(middle)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(0)
+        column.addWidget(self.notice)
+        column.addWidget(self.sheet, 1)
+        column.addWidget(self.strip)
+        self.setCentralWidget(middle)
+        self.inspector_dock = self._dock("Inspector", self.inspector, _RIGHT)
+        self.ledger_dock = self._dock("Ledger", self.ledger, _BOTTOM)
+        self.setCorner(Qt.Corner.BottomRightCorner, _RIGHT)
+        self.resizeDocks([self.inspector_dock], [440], Qt.Orientation.Horizontal)
+        self.resizeDocks([self.ledger_dock], [260], Qt.Orientation.Vertical)
+        self._fill_tools()
+        self.statusBar().addPermanentWidget(self.state)
+        self._demos = QMenu("Open a demo network", self)
+        for name, path in demo_files():
+            self._demos.addAction(name, partial(self.files.open_path, path))
+        self._recent = QMenu("Open recent", self)
+        for menu in (self._demos, self._recent):
+            self.menus["File"].insertMenu(self.actions_by_id["save"], menu)
+
+    def _dock(self, title: str, widget: QWidget, area: Qt.DockWidgetArea) -> QDockWidget:
+        dock = QDockWidget(title, self)
+        dock.setObjectName(title)
+        dock.setWidget(widget)
+        dock.setTitleBarWidget(QWidget(dock))
+        self.addDockWidget(area, dock)
+        return dock
+
+    def _fill_tools(self) -> None:
+        bar = QToolBar("Tools", self)
+        bar.setObjectName("Tools")
+        bar.setMovable(False)
+        for group in (
+            ("tool_select", "tool_router", "tool_segment", "tool_link"),
+            ("toggle_down", "toggle_drained", "try_cost"),
+            ("outward", "effect"),
+            ("undo", "redo"),
+            ("fit", "ledger"),
+        ):
+            bar.addActions([self.actions_by_id[key] for key in group])
+            bar.addSeparator()
+        self.addToolBar(bar)
+
+    def _connect(self) -> None:
+        sheet, desk = self.sheet, self.desk
+        for part in (sheet, self.inspector, self.strip):
+            part.edited.connect(desk.apply)
+        for part in (sheet, self.inspector, self.ledger):
+            part.hint.connect(self.hint)
+        sheet.focus_asked.connect(desk.set_focus)
+        sheet.selection_changed.connect(self._show_selection)
+        sheet.menu_asked.connect(self._show_menu)
+        sheet.tool_changed.connect(self._show_tool)
+        self.inspector.focus_asked.connect(self.go_to)
+        self.inspector.path_lit.connect(sheet.light_path)
+        self.inspector.path_asked.connect(desk.set_pair)
+        self.ledger.pair_asked.connect(desk.set_pair)
+        self.strip.ledger_asked.connect(self.toggle_ledger)
+        desk.document_changed.connect(self._show_document)
+        desk.plan_changed.connect(self._show_plan)
+        desk.focus_changed.connect(self._show_focus)
+        desk.answered.connect(self._show_answer)
+        desk.ledger_changed.connect(self._show_ledger)
+        desk.refused.connect(self.hint)
+        desk.state_changed.connect(self.state.setText)
+        self.files.state_changed.connect(self.state.setText)
+        self.files.noted.connect(self.notice.say)
+        self.files.recent_changed.connect(self._fill_recent)
+
+    # -- showing ------------------------------------------------------------------------
+
+    def hint(self, text: str) -> None:
+        """Say in the status bar what to do next, or why something was not done."""
+        self.statusBar().showMessage(text)
+
+    def _show_document(self) -> None:
+        self.notice.hide()
+        self.sheet.set_document(self.desk.document)
+        self.inspector.set_document(self.desk.document, self.desk.answers)
+        self._show_plan()
+
+    def _show_plan(self) -> None:
+        document = self.desk.document
+        self.setWindowTitle(f"{document.title}[*] – netsketch")
+        self.setWindowModified(document.is_modified)
+        self.strip.show_trial(document.plan)
+        self.inspector.refresh()
+        for key, label in (("undo", document.undo_label), ("redo", document.redo_label)):
+            action = self.actions_by_id[key]
+            word = key.capitalize()
+            action.setEnabled(label is not None)
+            action.setStatusTip(f"{word}: {label}" if label else f"Nothing to {key}")
+            action.setToolTip(f"{word}: {label}" if label else f"Nothing to {key}")
+            action.setIconText(word)
+            action.setText(f"{word}: {label[:60]}" if label else word)
+        tried = bool(document.plan.trial)
+        for key in ("adopt", "discard", "effect"):
+            self.actions_by_id[key].setEnabled(tried)
+
+    def _show_focus(self) -> None:
+        self.sheet.light_path(None)
+        self._show_selection()
+
+    def _show_selection(self) -> None:
+        chosen = self.sheet.selected_nodes, self.sheet.selected_links
+        self.inspector.show_focus(self.desk.focus, chosen)
+        several = len(chosen[0]) + len(chosen[1])
+        for key in ("delete", "toggle_down"):
+            self.actions_by_id[key].setEnabled(several > 0)
+        self.actions_by_id["set_cost"].setEnabled(len(chosen[1]) > 0)
+        self.actions_by_id["try_cost"].setEnabled(len(chosen[1]) == 1)
+        for key in ("rename", "toggle_drained", "drain_by_cost"):
+            self.actions_by_id[key].setEnabled(len(chosen[0]) > 0)
+
+    def _show_answer(self) -> None:
+        desk = self.desk
+        self.inspector.set_document(desk.document, desk.answers)
+        self.sheet.set_reading(desk.reading)
+        self.inspector.show_outward(desk.outward)
+        shown = "effect" if desk.wants_effect else "outward"
+        self.actions_by_id[shown].setChecked(True)
+
+    def _show_ledger(self) -> None:
+        desk = self.desk
+        if desk.is_computing:
+            self.ledger.show_computing()
+            self.strip.show_totals("computing…")
+            return
+        self.ledger.set_ledger(desk.ledger, desk.document.plan)
+        self.strip.show_totals(_totals(desk.ledger) if desk.document.plan.trial else "")
+
+    def _show_tool(self, tool: str) -> None:
+        self.actions_by_id[f"tool_{tool}"].setChecked(True)
+
+    def _show_menu(self, focus: Focus | None, at: QPoint) -> None:
+        menu = QMenu(self)
+        menu.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        menu.addActions(
+            [self.actions_by_id[key] for key in actions.CONTEXT[focus[0] if focus else None]]
+        )
+        menu.popup(at)
+
+    def _fill_recent(self) -> None:
+        self._recent.clear()
+        for path in self.settings.recent:
+            action = self._recent.addAction(path.name, partial(self.files.open_path, path))
+            action.setToolTip(str(path))
+        self._recent.setEnabled(bool(self.settings.recent))
+
+    # -- what commands ask of the window -------------------------------------------------
+
+    def go_to(self, focus: Focus) -> None:
+        """Select a thing, show it on the sheet and ask about it."""
+        kind, key = focus
+        self.sheet.select(*([(), [key]] if kind == "link" else [[key], ()]))
+        self.sheet.show_thing(key)
+        self.desk.set_focus(focus)
+
+    def set_look(self, name: str) -> None:
+        """Change the colours and remember it."""
+        self.settings.look = name
+        look = look_named(name)
+        apply_look(look)
+        self.sheet.set_look(look)
+        self.actions_by_id[f"look_{name}"].setChecked(True)
+
+    def toggle_ledger(self) -> None:
+        """Show or hide the ledger."""
+        self.ledger_dock.setVisible(not self.ledger_dock.isVisible())
+        self.actions_by_id["ledger"].setChecked(self.ledger_dock.isVisible())
+
+    def closeEvent(self, event: QCloseEvent) -> None:
+        if not self.files.may_leave():
+            event.ignore()
+            return
+        self.settings.keep_bytes("geometry", self.saveGeometry())
+        self.settings.keep_bytes("state", self.saveState())
+        self.jobs.close()
+        super().closeEvent(event)
+
+
+def _totals(ledger: Ledger | None) -> str:
+    if ledger is None:
+        return ""
+    words = [f"{ledger.moved:,} moved", f"{ledger.cut_off:,} cut off"]
+    if ledger.restored:
+        words.append(f"{ledger.restored:,} restored")
+    return ", ".join(words) + " of all pairs"

@@ -1,0 +1,172 @@
+"""The forwarding table as a Qt table model: sorted and filtered here, not by a proxy."""
+
+# ruff: noqa: N802  (Qt names the methods)
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import TYPE_CHECKING, Any
+
+from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt
+
+from netsketch.model import Plan
+from netsketch.readings.reading import Reading
+
+if TYPE_CHECKING:
+    from netsketch.analysis.table import RouteRow
+    from netsketch.session.answers import Outward
+
+HEADERS = ("Destination", "", "Next hop", "Cost", "Hops", "Delay, ms", "Change")
+TIPS = (
+    "The router or segment that is reached",
+    "The letter of the first hop, as on the sheet",
+    "The next router, and the link over which it is reached; several where costs are equal",
+    "The cost of the way; – where it is cut off",
+    "The least number of links left by a router on the way",
+    "Least and most over the equal-cost paths; empty where a link's delay is not known",
+    "Against the plan, in the trial",
+)
+_NUMBERS = (3, 4, 5)
+
+_DISPLAY, _TOOL_TIP = Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole
+_ALIGN = Qt.ItemDataRole.TextAlignmentRole
+_HORIZONTAL = Qt.Orientation.Horizontal
+_RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
+_NO_PARENT = QModelIndex()
+_FAR = float("inf")
+Index = QModelIndex | QPersistentModelIndex
+
+
+class Line:
+    """One row as it is shown: the route and its texts."""
+
+    __slots__ = ("cells", "keys", "row")
+
+    def __init__(
+        self, row: RouteRow, plan: Plan, reading: Reading, outcome: str | None
+    ) -> None:
+        from netsketch.reports.words import delay_text, next_hops_text, outcome_text
+
+        mark = reading.plates.get(row.to)
+        letters = " ".join(reading.first_hops[i].letter for i in mark.letters) if mark else ""
+        name = plan.nodes[row.to].label
+        self.row = row
+        self.cells = (
+            name,
+            letters,
+            next_hops_text(plan, row.next_hops) if row.cost is not None else "cut off",
+            "–" if row.cost is None else str(row.cost),
+            "" if row.hops is None else str(row.hops),
+            delay_text(row.delay_ms),
+            outcome_text(outcome),
+        )
+        self.keys: tuple[Any, ...] = (
+            name.casefold(),
+            letters,
+            self.cells[2].casefold(),
+            _FAR if row.cost is None else row.cost,
+            _FAR if row.hops is None else row.hops,
+            _FAR if row.delay_ms is None else row.delay_ms[0],
+            outcome or "~",
+        )
+
+
+class RouteTable(QAbstractTableModel):
+    """The routes of one router."""
+
+    def __init__(self, parent: QObject | None = None) -> None:
+        super().__init__(parent)
+        self._lines: list[Line] = []
+        self._shown: list[Line] = []
+        self._filter = ""
+        self._order: tuple[int, bool] = (0, False)
+
+    def show(self, outward: Outward | None, plan: Plan) -> None:
+        """Show another router's routes, or none."""
+        self.beginResetModel()
+        self._lines = []
+        if outward is not None:
+            self._lines = [
+                Line(row, plan, outward.reading, outward.changed.get(row.to))
+                for row in outward.rows
+            ]
+        self._choose()
+        self.endResetModel()
+
+    def set_filter(self, text: str) -> None:
+        """Show only rows that hold ``text`` in a name, an id, a next hop or a change."""
+        self._filter = text.strip().casefold()
+        self._reset(self._choose)
+
+    def sort(self, column: int, order: Qt.SortOrder = Qt.SortOrder.AscendingOrder) -> None:
+        if column >= 0:
+            self._order = column, order == Qt.SortOrder.DescendingOrder
+            self._reset(self._choose)
+
+    def _reset(self, change: Callable[[], None]) -> None:
+        self.beginResetModel()
+        change()
+        self.endResetModel()
+
+    def _choose(self) -> None:
+        wanted = self._filter
+        lines = self._lines
+        if wanted:
+            lines = [
+                line
+                for line in lines
+                if wanted in line.row.to.casefold()
+                or any(wanted in cell.casefold() for cell in line.cells)
+            ]
+        column, backwards = self._order
+        self._shown = sorted(lines, key=lambda line: line.keys[column], reverse=backwards)
+
+    def line(self, index: int) -> Line:
+        """Return a shown row."""
+        return self._shown[index]
+
+    def row_of(self, destination: str) -> int | None:
+        """Return where a destination stands among the shown rows."""
+        found = (i for i, line in enumerate(self._shown) if line.row.to == destination)
+        return next(found, None)
+
+    def counts(self) -> tuple[int, int]:
+        """Return how many rows are shown, of how many."""
+        return len(self._shown), len(self._lines)
+
+    def as_rows(self) -> list[list[object]]:
+        """Return the shown rows for a CSV: id, name, letters, next hops, numbers, change."""
+        return [
+            [
+                line.row.to, *line.cells[:3], line.row.cost, line.row.hops,
+                *(line.row.delay_ms or (None, None)), line.cells[6],
+            ]
+            for line in self._shown
+        ]  # fmt: skip
+
+    def rowCount(self, parent: Index = _NO_PARENT) -> int:
+        return 0 if parent.isValid() else len(self._shown)
+
+    def columnCount(self, parent: Index = _NO_PARENT) -> int:
+        return 0 if parent.isValid() else len(HEADERS)
+
+    def data(self, index: Index, role: int = _DISPLAY) -> Any:
+        if role == _DISPLAY or role == _TOOL_TIP:
+            return self._shown[index.row()].cells[index.column()][:400]
+        if role == _ALIGN and index.column() in _NUMBERS:
+            return _RIGHT
+        return None
+
+    def headerData(self, section: int, orientation: Qt.Orientation, role: int = _DISPLAY) -> Any:
+        if orientation == _HORIZONTAL:
+            if role == _DISPLAY:
+                return HEADERS[section]
+            if role == _TOOL_TIP:
+                return TIPS[section]
+        return None
+
+
+CSV_HEADER = (
+    "id", "destination", "first hops", "next hops", "cost", "hops", "least delay ms",
+    "most delay ms", "change",
+)  # fmt: skip
