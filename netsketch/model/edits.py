@@ -10,7 +10,7 @@ import msgspec
 from netsketch.model.checks import PlanError, check_cost, quoted
 from netsketch.model.costs import highest_cost
 from netsketch.model.edit import Add, Change, ChangeSettings, ChangeTrial, Edit, Remove, Step
-from netsketch.model.items import Demand, Item, Link, Node, Router, Segment
+from netsketch.model.items import Demand, Item, Link, Node, Router, Segment, SharedRiskGroup
 from netsketch.model.plan import Plan
 from netsketch.model.trial import Drained, LinkCost, LinkState, NodeState, Trial, TrialChange
 
@@ -144,6 +144,16 @@ def set_costs(plan: Plan, link: str, cost: int, cost_back: int) -> Edit:
         [replace(plan.links[link], cost=cost, cost_back=cost_back)],
         f"set cost of link {link}",
     )
+
+
+def set_groups(plan: Plan, link: str, groups: Iterable[str]) -> Edit:
+    """Return the edit that makes ``groups`` (ids) the shared-risk groups of a link; groups
+    that are not there yet are made with it."""
+    wanted = tuple(dict.fromkeys(groups))
+    fresh = [SharedRiskGroup(id=key) for key in wanted if key not in plan.groups]
+    made = add(plan, *fresh).steps
+    changed = change(plan, [replace(plan.links[link], groups=wanted)], "").steps
+    return Edit(f"set shared risk of link {link}", (*made, *changed))
 
 
 def set_settings(plan: Plan, **fields: Any) -> Edit:

@@ -9,7 +9,15 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QPoint, Qt
 from PySide6.QtGui import QCloseEvent
-from PySide6.QtWidgets import QDockWidget, QLabel, QMainWindow, QMenu, QToolBar, QVBoxLayout, QWidget
+from PySide6.QtWidgets import (
+    QDockWidget,
+    QLabel,
+    QMainWindow,
+    QMenu,
+    QToolBar,
+    QVBoxLayout,
+    QWidget,
+)
 
 from netsketch.session.jobs import Jobs
 from netsketch.sheet import Sheet
@@ -112,10 +120,10 @@ class MainWindow(QMainWindow):
 
     def _connect(self) -> None:
         sheet, desk = self.sheet, self.desk
-        for part in (sheet, self.inspector, self.strip):
-            part.edited.connect(desk.apply)
-        for part in (sheet, self.inspector, self.ledger):
-            part.hint.connect(self.hint)
+        for edited in (sheet.edited, self.inspector.edited, self.strip.edited):
+            edited.connect(desk.apply)
+        for hint in (sheet.hint, self.inspector.hint, self.ledger.hint):
+            hint.connect(self.hint)
         sheet.focus_asked.connect(desk.set_focus)
         sheet.selection_changed.connect(self._show_selection)
         sheet.menu_asked.connect(self._show_menu)

@@ -42,9 +42,7 @@ class Line:
 
     __slots__ = ("cells", "keys", "row")
 
-    def __init__(
-        self, row: RouteRow, plan: Plan, reading: Reading, outcome: str | None
-    ) -> None:
+    def __init__(self, row: RouteRow, plan: Plan, reading: Reading, outcome: str | None) -> None:
         from netsketch.reports.words import delay_text, next_hops_text, outcome_text
 
         mark = reading.plates.get(row.to)

@@ -36,7 +36,7 @@ class Settings:
 
     @property
     def look(self) -> str:
-        """"light", "dark" or "system"."""
+        """ "light", "dark" or "system"."""
         kept = str(self._store.value("window/look", "system"))
         return kept if kept in ("light", "dark") else "system"
 
