@@ -15,7 +15,7 @@ from PySide6.QtCore import QRectF
 
 from netsketch.model import Change, ChangeSet, Plan, Router, Segment, Step
 from netsketch.readings.reading import Reading
-from netsketch.sheet.contents import Flags, unit_for
+from netsketch.sheet.contents import Flags, Floats, unit_for
 from netsketch.sheet.frame import Frame, frame_of, relaid, with_reading
 from netsketch.sheet.lettering import Lettering
 from netsketch.sheet.look import LIGHT, Look
@@ -50,6 +50,7 @@ class Drawing:
         self._unsubscribe: Callable[[], None] = lambda: None
         self._frame: Frame | None = None
         self._lifted: tuple[Flags, Flags] | None = None
+        self._home: tuple[Floats, Floats] | None = None
 
     def set_document(self, document: PlanHolder | None) -> None:
         """Show another document; ``None`` shows an empty sheet."""
@@ -60,7 +61,7 @@ class Drawing:
             self.plan = document.plan
             self._unsubscribe = document.subscribe(self._on_change)
         self.unit = unit_for(self.plan)
-        self._frame = self._lifted = None
+        self._frame = self._lifted = self._home = None
         self._touch()
 
     def set_reading(self, reading: Reading | None, look: Look) -> None:
@@ -103,6 +104,7 @@ class Drawing:
             rails = one[nodes[other] & contents.nodes.segment[one]]
             nodes[rails] = True
         self._lifted = nodes, nodes[tail] | nodes[head]
+        self._home = contents.nodes.x.copy(), contents.nodes.y.copy()
         self._touch()
 
     def shift(self, rows: list[int], places: np.ndarray) -> None:
@@ -112,9 +114,13 @@ class Drawing:
         self._frame = relaid(frame)
 
     def drop(self) -> None:
-        """Set what was lifted back on the sheet, where the plan has it."""
-        self._lifted = None
-        self._frame = None
+        """Set what was lifted back on the sheet, where it was."""
+        if self._lifted is None or self._frame is None or self._home is None:
+            return
+        nodes = self._frame.contents.nodes
+        nodes.x[:], nodes.y[:] = self._home
+        self._frame = relaid(self._frame)
+        self._lifted = self._home = None
         self._touch()
 
     def extent(self) -> QRectF:
@@ -144,7 +150,7 @@ class Drawing:
             self._frame = relaid(frame)
         else:
             self._frame = None
-        self._lifted = None
+        self._lifted = self._home = None
         self._touch()
 
 

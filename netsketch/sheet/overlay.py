@@ -99,6 +99,16 @@ def paint_enlarged(painter: QPainter, frame: Frame, node: int, scale: float = 1.
     painter.restore()
 
 
+def paint_large(painter: QPainter, frame: Frame, focus: Iterable[str], selected: list[int]) -> None:
+    """Where names are too small to read, show the focus and one selected plate large."""
+    if frame.scale >= READABLE_NAME:
+        return
+    row_of = frame.contents.nodes.row
+    rows = [row_of[key] for key in focus if key in row_of]
+    for row in dict.fromkeys([*rows, *(selected if len(selected) == 1 else ())]):
+        paint_enlarged(painter, frame, row)
+
+
 def paint_lit_path(painter: QPainter, frame: Frame, lit: Mapping[str, int]) -> None:
     """Paint the links of one path, picked in a table, in ink with their directions."""
     rows_of = frame.contents.links.row

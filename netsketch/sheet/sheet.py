@@ -30,20 +30,13 @@ from netsketch.sheet.frame import Frame
 from netsketch.sheet.gestures import refusal
 from netsketch.sheet.keys import press_key
 from netsketch.sheet.look import Look
-from netsketch.sheet.paint_plates import READABLE_NAME
 from netsketch.sheet.painter import paint_frame
 from netsketch.sheet.pointer import Pointer
 from netsketch.sheet.resting import RestingPicture
+from netsketch.sheet.tools import TOOL_HINTS, TOOLS
 from netsketch.sheet.view import View, fitting
 from netsketch.sheet.writing import Writing
 
-TOOLS = ("select", "router", "segment", "link")
-_TOOL_HINTS = {
-    "select": "",
-    "router": "Click on the sheet to draw routers; Esc ends",
-    "segment": "Click on the sheet to draw LAN segments; Esc ends",
-    "link": "Drag from plate to plate to draw links; Esc ends",
-}
 _REST_MS = 100
 _Reason = Qt.FocusReason
 _SHIFT, _CTRL = Qt.KeyboardModifier.ShiftModifier, Qt.KeyboardModifier.ControlModifier
@@ -232,7 +225,7 @@ class Sheet(QWidget):
             self.edited.emit(edit)
 
     def set_tool(self, tool: str) -> None:
-        """Take up a tool: one of :data:`TOOLS`."""
+        """Take up a tool: one of :data:`~netsketch.sheet.tools.TOOLS`."""
         if tool not in TOOLS:
             raise ValueError(f"no such tool: {tool}")
         if tool != self.tool:
@@ -240,7 +233,7 @@ class Sheet(QWidget):
             self.tool = tool
             self._pointer.show_cursor()
             self.tool_changed.emit(tool)
-            self.hint.emit(_TOOL_HINTS[tool])
+            self.hint.emit(TOOL_HINTS[tool])
 
     def draw_node(self, at: QPointF) -> None:
         """Draw a router, or a segment with that tool in hand, at a place on the sheet."""
@@ -319,17 +312,10 @@ class Sheet(QWidget):
         rows = frame.contents.nodes.row, frame.contents.links.row
         nodes = [rows[0][key] for key in self.selected_nodes]
         overlay.paint_selection(painter, frame, nodes, [rows[1][k] for k in self.selected_links])
-        if self.view.scale < READABLE_NAME:
-            self._paint_enlarged(painter, frame, nodes)
+        reading = self.drawing.reading
+        overlay.paint_large(painter, frame, reading.focus if reading else (), nodes)
         if self._pointer.gesture is not None:
             self._pointer.gesture.paint(painter, frame)
-
-    def _paint_enlarged(self, painter: QPainter, frame: Frame, selected: list[int]) -> None:
-        """Where names are too small to read, show the focus and one selected plate large."""
-        focus = () if self.drawing.reading is None else self.drawing.reading.focus
-        rows = [frame.contents.nodes.row[key] for key in focus if key in frame.contents.nodes.row]
-        for row in dict.fromkeys([*rows, *(selected if len(selected) == 1 else ())]):
-            overlay.paint_enlarged(painter, frame, row)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         if self._fit_wanted:

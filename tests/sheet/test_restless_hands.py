@@ -8,7 +8,7 @@ import pytest
 from PySide6.QtCore import QPoint, Qt
 
 from netsketch.model import edits
-from netsketch.sheet.sheet import TOOLS
+from netsketch.sheet.tools import TOOLS
 from tests.sheet.conftest import NO_KEYS, SHIFT, Hands, quay_plan
 
 pytestmark = pytest.mark.gui
