@@ -28,7 +28,7 @@ SEPARATOR = Entry("", "", "", "")
 
 ENTRIES: tuple[Entry, ...] = (
     Entry("new", "File", "New", "Start an empty plan", "Ctrl+N"),
-    Entry("open", "File", "Open…", "Open a plan, or import GraphML, GML or node-link JSON", "Ctrl+O"),
+    Entry("open", "File", "Open…", "Open a plan, or import a GraphML, GML or JSON graph", "Ctrl+O"),
     Entry("save", "File", "Save", "Save the plan with its trial", "Ctrl+S"),
     Entry("save_as", "File", "Save as…", "Save under another name or in another format",
           "Ctrl+Shift+S"),
@@ -47,7 +47,7 @@ ENTRIES: tuple[Entry, ...] = (
     Entry("full_size", "View", "Full size", "Show the sheet at 100 %", "Ctrl+0"),
     Entry("fit", "View", "Fit the plan", "Show the whole plan", "F"),
     Entry("ledger", "View", "Ledger", "Show every pair that the trial changes", "L", "switch"),
-    Entry("look_system", "View", "Look of the system", "Light or dark as the system is", "", "look"),
+    Entry("look_system", "View", "As the system", "Light or dark as the system is", "", "look"),
     Entry("look_light", "View", "Paper and ink", "Light", "", "look"),
     Entry("look_dark", "View", "Graphite and chalk", "Dark", "", "look"),
     Entry("tool_select", "Draw", "Select", "Select and move", "S", "tool"),
@@ -65,7 +65,7 @@ ENTRIES: tuple[Entry, ...] = (
           "T"),
     Entry("adopt", "Trial", "Adopt", "Make the trial the plan", "Ctrl+Return"),
     Entry("discard", "Trial", "Discard", "Drop every change of the trial", "Ctrl+Backspace"),
-    Entry("outward", "Reading", "Outward", "Show the source tree of the focus router", "O", "reading"),
+    Entry("outward", "Reading", "Outward", "Show the focus router's source tree", "O", "reading"),
     Entry("effect", "Reading", "Effect", "Show what the trial changes for the focus router", "E",
           "reading"),
     Entry("keys", "Help", "Keys", "Show every key", "F1"),

@@ -108,13 +108,15 @@ class LedgerModel(QAbstractTableModel):
         self._chosen = chosen[order]
 
     def _key(self, ledger: Ledger, column: int) -> npt.NDArray[np.int64]:
-        if column == 0:
-            return self._alphabet[ledger.sources]
-        if column == 1:
-            return self._alphabet[ledger.targets]
-        if column == 2:
-            return ledger.outcomes.astype(np.int64)
-        return (ledger.before, ledger.after, ledger.after - ledger.before)[column - 3]
+        keys: tuple[npt.NDArray[Any], ...] = (
+            self._alphabet[ledger.sources],
+            self._alphabet[ledger.targets],
+            ledger.outcomes,
+            ledger.before,
+            ledger.after,
+            ledger.after - ledger.before,
+        )
+        return keys[column].astype(np.int64)
 
     def pair(self, index: int) -> tuple[str, str]:
         """Return the routers of a shown row."""
@@ -153,7 +155,7 @@ class LedgerModel(QAbstractTableModel):
         return 0 if parent.isValid() else len(HEADERS)
 
     def data(self, index: Index, role: int = _DISPLAY) -> Any:
-        if role == _DISPLAY or role == _TOOL_TIP:
+        if role in (_DISPLAY, _TOOL_TIP):
             return self._texts(int(self._chosen[index.row()]))[index.column()][:400]
         if role == _ALIGN and index.column() in _NUMBERS:
             return _RIGHT

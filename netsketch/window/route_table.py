@@ -149,7 +149,7 @@ class RouteTable(QAbstractTableModel):
         return 0 if parent.isValid() else len(HEADERS)
 
     def data(self, index: Index, role: int = _DISPLAY) -> Any:
-        if role == _DISPLAY or role == _TOOL_TIP:
+        if role in (_DISPLAY, _TOOL_TIP):
             return self._shown[index.row()].cells[index.column()][:400]
         if role == _ALIGN and index.column() in _NUMBERS:
             return _RIGHT

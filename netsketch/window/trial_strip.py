@@ -78,9 +78,7 @@ class TrialStrip(QFrame):
                 widget.deleteLater()
         changes = plan.trial.changes
         if not changes:
-            empty = QLabel(
-                "Nothing is tried. Select a link or a router and press D to take it down."
-            )
+            empty = QLabel("Nothing is tried. Select a link or a router and press D: it goes down.")
             empty.setProperty("role", "soft")
             self._row.addWidget(empty)
         for change in changes[:MOST_CHIPS]:
