@@ -28,8 +28,12 @@ from netsketch.sheet.painter import paint_frame
 
 MARGIN = 32.0
 LEAST_WIDTH = 360.0
-LARGEST_PIXELS = 16_000
+MOST_PIXELS = 40_000_000
 _POINTS = 72 / 96
+
+
+class PictureError(ValueError):
+    """Why a picture of this size or kind cannot be painted."""
 
 
 class Picture:
@@ -76,10 +80,10 @@ def write_picture(
 ) -> None:
     """Write a picture of ``plan`` with ``reading`` to ``path``, whose suffix says how:
     .png, .svg or .pdf. ``width``: in pixels; ``None`` takes the natural size, twice as
-    many pixels for a PNG. With a reading comes a legend.
+    many pixels for a PNG as far as memory allows. With a reading comes a legend.
 
-    Raises FormatError for another suffix and when the file cannot be written. A file that
-    is there is replaced only by a whole picture.
+    Raises FormatError for another suffix, for a PNG beyond 40 million pixels and when the
+    file cannot be written. A file that is there is replaced only by a whole picture.
     """
     writer = WRITERS.get(path.suffix.lower())
     if writer is None:
@@ -89,7 +93,10 @@ def write_picture(
     data = QByteArray()
     buffer = QBuffer(data)
     buffer.open(QIODevice.OpenModeFlag.WriteOnly)
-    writer(picture, buffer, width)
+    try:
+        writer(picture, buffer, width)
+    except PictureError as error:
+        raise FormatError(str(path), "", str(error)) from error
     buffer.close()
     write_bytes(path, bytes(data.data()))
 
@@ -124,16 +131,18 @@ def _title(plan: Plan, reading: Reading | None) -> str:
 
 
 def _write_png(picture: Picture, device: QIODevice, width: int | None) -> None:
-    scale = 2.0 if width is None else width / picture.size.width()
-    longest = max(picture.size.width(), picture.size.height()) * scale
-    scale *= min(1.0, LARGEST_PIXELS / longest)
+    most = (MOST_PIXELS / (picture.size.width() * picture.size.height())) ** 0.5
+    scale = min(2.0, most) if width is None else width / picture.size.width()
+    if scale > most:
+        widest = int(most * picture.size.width())
+        raise PictureError(f"this plan is drawn at most {widest} pixels wide as PNG, not {width}")
     image = QImage((picture.size * scale).toSize(), QImage.Format.Format_RGB32)
     image.fill(QColor(picture.look.paper))
     picture.frame.scale = max(scale, 1.0)
     with QPainter(image) as painter:
         picture.paint(painter, scale)
     if not image.save(device, "PNG"):  # type: ignore[call-overload]
-        raise OSError("the picture could not be written as PNG")
+        raise PictureError("the picture could not be turned into PNG")
 
 
 def _write_svg(picture: Picture, device: QIODevice, width: int | None) -> None:

@@ -79,3 +79,18 @@ def test_a_folder_that_is_not_there_is_an_error_of_one_line(tmp_path: Path) -> N
     with pytest.raises(FormatError) as caught:
         write_picture(quay_plan(), None, tmp_path / "nowhere" / "quay.png")
     assert "\n" not in str(caught.value)
+
+
+def test_a_png_too_large_for_memory_is_refused(tmp_path: Path) -> None:
+    path = tmp_path / "quay.png"
+    with pytest.raises(FormatError, match=r"at most \d+ pixels wide as PNG, not 1000000"):
+        write_picture(quay_plan(), None, path, width=1_000_000)
+    assert not path.exists()
+
+
+def test_a_plan_as_wide_as_a_country_still_fits_a_png(tmp_path: Path) -> None:
+    plan, path = quay_plan(), tmp_path / "wide.png"
+    plan.apply(edits.add_router(plan, 90_000, 90_000, name="Outpost"))
+    write_picture(plan, None, path)
+    image = QImage(str(path))
+    assert 39_000_000 < image.width() * image.height() <= 40_100_000
