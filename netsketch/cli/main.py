@@ -46,34 +46,43 @@ def main(argv: Sequence[str]) -> int:
     except SystemExit as left:  # argparse: 0 after --help and --version, 2 for bad usage
         return left.code if isinstance(left.code, int) else 2
     except (FormatError, InputError) as error:
-        return _refuse(str(error))
+        return refused(str(error))
     except BrokenPipeError:
         _give_output_up()
-        return _refuse("standard output was closed before everything was written")
+        return refused("standard output was closed before everything was written")
     except OSError as error:
         _give_output_up()
-        return _refuse(": ".join(str(p) for p in (error.filename, error.strerror or error) if p))
+        return refused(": ".join(str(p) for p in (error.filename, error.strerror or error) if p))
     except KeyboardInterrupt:
-        _refuse("stopped")
+        refused("stopped")
         return INTERRUPTED
     except Exception as error:
         if os.environ.get("NETSKETCH_DEBUG"):
             raise
-        return _refuse(f"internal error: {type(error).__name__}: {error}")
+        return refused(f"internal error: {type(error).__name__}: {error}")
     return 0
 
 
 def _run(argv: Sequence[str]) -> None:
     name = argv[0] if argv else ""
     if name not in COMMANDS:
-        _general_parser().parse_args(argv)
-        return
+        window_options(argv)
+        _general_parser().error("a file alone opens the window")
     command = cast(Command, import_module(f"netsketch.cli.{name}"))
     parser = ArgumentParser(
         prog=f"netsketch {name}", description=f"{COMMANDS[name].capitalize()}.", allow_abbrev=False
     )
     command.add_options(parser)
     command.run(parser.parse_args(argv[1:]))
+
+
+def window_options(argv: Sequence[str]) -> Namespace:
+    """Return what a call without a command asks for (``file``, or ``None``). Leaves with
+    ``SystemExit`` after ``--help`` and ``--version``, and on bad usage."""
+    parser = _general_parser()
+    if len(argv) > 1 and not argv[0].startswith("-"):
+        parser.error(f"there is no command {argv[0]!r}; there are {', '.join(COMMANDS)}")
+    return parser.parse_args(argv)
 
 
 def _general_parser() -> ArgumentParser:
@@ -90,7 +99,8 @@ def _general_parser() -> ArgumentParser:
     return parser
 
 
-def _refuse(line: str) -> int:
+def refused(line: str) -> int:
+    """Print why nothing was done, and return the exit code that says so."""
     print(one_line(f"netsketch: {line}"), file=sys.stderr)
     return 1
 

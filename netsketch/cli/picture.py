@@ -6,6 +6,7 @@ from __future__ import annotations
 from argparse import ArgumentParser, Namespace
 from pathlib import Path
 
+from netsketch import screen
 from netsketch.cli import naming, path, plan_options
 from netsketch.cli.refusal import InputError
 from netsketch.readings.reading import Reading
@@ -28,11 +29,12 @@ def run(options: Namespace) -> None:
     """Write the picture: bare, of a router's routes (``--from``), or of a path (both)."""
     document = plan_options.opened(options)
     reading = _reading(document, options)
-    try:
-        from netsketch.sheet.look import DARK, LIGHT
-        from netsketch.sheet.picture import write_picture
-    except ImportError as error:
-        raise InputError("pictures need Qt, which cannot be loaded", str(error)) from error
+    missing = screen.missing_library()
+    if missing:
+        raise InputError("a picture cannot be drawn", missing)
+    from netsketch.sheet.look import DARK, LIGHT
+    from netsketch.sheet.picture import write_picture
+
     look = DARK if options.dark else LIGHT
     write_picture(document.plan, reading, Path(options.out), look)
     plan_options.tell(options.file, document.notes)

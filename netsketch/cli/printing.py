@@ -36,7 +36,8 @@ def write_table(
 ) -> None:
     """Print a table as "csv", or as "text" under a title."""
     if form == "csv":
-        sys.stdout.write(csv_text(header, rows))
+        # Standard output makes the line ends of the system.
+        sys.stdout.write(csv_text(header, rows).replace("\r\n", "\n"))
         return
     print(title)
     listed = list(rows)

@@ -1,0 +1,5 @@
+"""``python -m netsketch``."""
+
+from netsketch.start import run
+
+run()
