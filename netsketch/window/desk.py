@@ -78,7 +78,10 @@ class Desk(QObject):
 
         if self.answers is not None:
             self.answers.close()
+        # Answers must hear of an edit before the desk asks them about it.
+        self._leave()
         self.answers = Answers(self.document)
+        self._leave = self.document.subscribe(self._follow)
 
     def set_document(self, document: Document) -> None:
         """Take up another document."""

@@ -16,17 +16,18 @@ if TYPE_CHECKING:
     from netsketch.analysis.table import RouteRow
     from netsketch.session.answers import Outward
 
-HEADERS = ("Destination", "", "Next hop", "Cost", "Hops", "Delay, ms", "Change")
+HEADERS = ("Destination", "Change", "", "Next hop", "Cost", "Hops", "Delay, ms")
+CHANGE = 1
 TIPS = (
     "The router or segment that is reached",
+    "What the trial does to the route",
     "The letter of the first hop, as on the sheet",
     "The next router, and the link over which it is reached; several where costs are equal",
     "The cost of the way; – where it is cut off",
     "The least number of links left by a router on the way",
     "Least and most over the equal-cost paths; empty where a link's delay is not known",
-    "Against the plan, in the trial",
 )
-_NUMBERS = (3, 4, 5)
+_NUMBERS = (4, 5, 6)
 
 _DISPLAY, _TOOL_TIP = Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole
 _ALIGN = Qt.ItemDataRole.TextAlignmentRole
@@ -51,21 +52,21 @@ class Line:
         self.row = row
         self.cells = (
             name,
+            outcome_text(outcome),
             letters,
             next_hops_text(plan, row.next_hops) if row.cost is not None else "cut off",
             "–" if row.cost is None else str(row.cost),
             "" if row.hops is None else str(row.hops),
             delay_text(row.delay_ms),
-            outcome_text(outcome),
         )
         self.keys: tuple[Any, ...] = (
             name.casefold(),
+            outcome or "~",
             letters,
-            self.cells[2].casefold(),
+            self.cells[3].casefold(),
             _FAR if row.cost is None else row.cost,
             _FAR if row.hops is None else row.hops,
             _FAR if row.delay_ms is None else row.delay_ms[0],
-            outcome or "~",
         )
 
 
@@ -133,11 +134,11 @@ class RouteTable(QAbstractTableModel):
         return len(self._shown), len(self._lines)
 
     def as_rows(self) -> list[list[object]]:
-        """Return the shown rows for a CSV: id, name, letters, next hops, numbers, change."""
+        """Return the shown rows for a CSV, as :data:`CSV_HEADER` names them."""
         return [
             [
-                line.row.to, *line.cells[:3], line.row.cost, line.row.hops,
-                *(line.row.delay_ms or (None, None)), line.cells[6],
+                line.row.to, line.cells[0], *line.cells[2:4], line.row.cost, line.row.hops,
+                *(line.row.delay_ms or (None, None)), line.cells[CHANGE],
             ]
             for line in self._shown
         ]  # fmt: skip

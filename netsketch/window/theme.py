@@ -59,6 +59,7 @@ def _style(look: Look) -> str:
         QMainWindow::separator {{ background: {look.hairline}; width: 1px; height: 1px; }}
         QToolTip {{ color: {look.paper}; background: {look.ink}; border: none; padding: 3px; }}
         QMenuBar, QStatusBar, QToolBar {{ background: {look.paper}; color: {look.ink}; }}
+        QToolBar#Trial {{ border: none; border-top: 1px solid {look.hairline}; }}
         QToolBar {{ border: none; border-bottom: 1px solid {look.hairline}; spacing: 4px; }}
         QToolButton {{ padding: 4px 8px; border: 1px solid transparent; border-radius: 4px; }}
         QToolButton:hover {{ border-color: {look.hairline}; }}
@@ -80,7 +81,7 @@ def _style(look: Look) -> str:
         QFrame[role="chip"] {{
             border: 1px solid {look.ink}; border-radius: 11px; background: {look.plate};
         }}
-        QFrame[role="strip"] {{ border-top: 1px solid {look.hairline}; }}
+        QScrollBar:horizontal {{ height: 10px; }}
         QFrame[role="notice"] {{ background: {look.ink}; }}
         QFrame[role="notice"] QLabel {{ color: {look.paper}; }}
     """

@@ -19,12 +19,12 @@ from PySide6.QtWidgets import (
 from netsketch.model import Router, edits
 from netsketch.reports.tables import csv_text
 from netsketch.window.pages.page import Page, button, form, label, line, short
-from netsketch.window.route_table import CSV_HEADER, RouteTable
+from netsketch.window.route_table import CHANGE, CSV_HEADER, RouteTable
 
 if TYPE_CHECKING:
     from netsketch.session.answers import Outward
 
-_WIDTHS = (104, 30, 126, 44, 40, 62, 78)
+_WIDTHS = (110, 78, 30, 140, 48, 44, 74)
 
 
 class RouterPage(Page):
@@ -115,7 +115,7 @@ class RouterPage(Page):
         chosen = self._chosen()
         self.table_model.show(outward, self.plan)
         changed = outward is not None and bool(outward.changed)
-        self.table.setColumnHidden(len(_WIDTHS) - 1, not changed)
+        self.table.setColumnHidden(CHANGE, not changed)
         self._show_count(outward is None)
         row = self.table_model.row_of(chosen) if chosen else None
         if row is not None:
@@ -201,6 +201,6 @@ def _table(model: RouteTable) -> QTableView:
     header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
     for column, width in enumerate(_WIDTHS):
         table.setColumnWidth(column, width)
-    header.setSectionResizeMode(2, QHeaderView.ResizeMode.Stretch)
+    header.setStretchLastSection(True)
     table.sortByColumn(0, Qt.SortOrder.AscendingOrder)
     return table
