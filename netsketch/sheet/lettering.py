@@ -8,6 +8,7 @@ from PySide6.QtGui import QFont, QFontMetricsF, QGuiApplication
 LONGEST = 80
 """Characters looked at when a text is fitted; more never fit a plate."""
 
+LARGER_BELOW = 0.72
 _ELIDE_RIGHT = Qt.TextElideMode.ElideRight
 _JOINERS = "\u200d\ufe0f"  # inside emoji; everything else unprintable becomes a space
 
@@ -52,10 +53,14 @@ class Face:
 
 
 class Lettering:
-    """The four faces of the sheet, in sheet units (pixels at scale 1)."""
+    """The faces of the sheet, in sheet units (pixels at scale 1).
+
+    Below the scale :data:`LARGER_BELOW` what can grow takes a larger face, so that a plan
+    that just fits a window can still be read.
+    """
 
     def __init__(self) -> None:
-        self.name = Face(14, bold=True)
+        self.name, self.large_name = Face(14, bold=True), Face(16, bold=True)
         self.site = Face(11)
-        self.tag = Face(12)
-        self.band = Face(11, bold=True)
+        self.tag, self.large_tag = Face(12), Face(15)
+        self.band, self.large_band = Face(11, bold=True), Face(14, bold=True)

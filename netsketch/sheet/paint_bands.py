@@ -8,6 +8,7 @@ from PySide6.QtGui import QColor, QPainter
 
 from netsketch.readings.reading import PlateMark
 from netsketch.sheet.frame import Frame
+from netsketch.sheet.lettering import LARGER_BELOW, Face
 from netsketch.sheet.marks import Marks
 from netsketch.sheet.paint_links import pen_of
 from netsketch.sheet.paths import corners_of, draw_shapes
@@ -15,7 +16,7 @@ from netsketch.sheet.paths import corners_of, draw_shapes
 BAND_HEIGHT = 14.0
 _BELOW = 3.0
 _SECOND_OUTLINE = 4.0
-READABLE, VISIBLE = 0.5, 0.3
+READABLE, VISIBLE = 0.42, 0.3
 """The least scales at which band texts and bands are painted; below, the colour fills
 the whole plate."""
 _NO_PEN = Qt.PenStyle.NoPen
@@ -33,11 +34,16 @@ def paint_bands(painter: QPainter, frame: Frame) -> None:
         return
     plates = frame.marks.plates
     rows = [row for row in np.flatnonzero(frame.nodes).tolist() if row in plates]
-    painter.setFont(frame.lettering.band.font)
+    painter.setFont(_face(frame).font)
     for row in rows:
         cells = _cells(frame, frame.marks, plates[row])
         if cells:
             _paint_band(painter, frame, row, cells, plates[row].moved)
+
+
+def _face(frame: Frame) -> Face:
+    lettering = frame.lettering
+    return lettering.large_band if frame.scale < LARGER_BELOW else lettering.band
 
 
 def _cells(frame: Frame, marks: Marks, mark: PlateMark) -> list[Cell]:
@@ -57,16 +63,17 @@ def _cells(frame: Frame, marks: Marks, mark: PlateMark) -> list[Cell]:
 
 def _paint_band(painter: QPainter, frame: Frame, row: int, cells: list[Cell], moved: bool) -> None:
     """Paint the cells side by side under the plate, wider than it where they need be."""
-    face = frame.lettering.band
+    face = _face(frame)
+    height = BAND_HEIGHT + 3.0 * (frame.scale < LARGER_BELOW)
     needs = [face.width(text) + 8 for text, _, _ in cells]
     left, _, right, bottom = frame.lines.boxes[row].tolist()
     spare = max(0.0, (right - left - sum(needs)) / len(cells))
     x = min(left, (left + right - sum(needs)) / 2)
     bottom += _SECOND_OUTLINE if moved else 0.0
-    outline = QRectF(x, bottom + _BELOW, sum(needs) + spare * len(cells), BAND_HEIGHT)
+    outline = QRectF(x, bottom + _BELOW, sum(needs) + spare * len(cells), height)
     painter.fillRect(outline.adjusted(-1, -_BELOW + 1, 1, 1), QColor(frame.look.paper))
     for (text, ground, ink), need in zip(cells, needs, strict=True):
-        cell = QRectF(x, outline.top(), need + spare, BAND_HEIGHT)
+        cell = QRectF(x, outline.top(), need + spare, height)
         painter.setPen(_NO_PEN if ground else pen_of(frame, frame.look.ink, 1.2))
         painter.setBrush(QColor(ground or frame.look.paper))
         painter.drawRoundedRect(cell.adjusted(0.5, 0, -0.5, 0), 3, 3)

@@ -13,7 +13,7 @@ from netsketch.sheet.paint_links import pen_of
 from netsketch.sheet.paint_tags import paint_flags
 from netsketch.sheet.paths import corners_of, draw_shapes, polylines, rectangles
 
-READABLE_NAME, READABLE_SITE = 0.42, 0.55
+READABLE_NAME, READABLE_SITE = 0.36, 0.6
 """The least scales at which names and sites are painted."""
 _ROUND = 7.0
 _NO_PEN = Qt.PenStyle.NoPen
@@ -158,12 +158,26 @@ def _paint_names(painter: QPainter, frame: Frame, focus: Flags, faded: Flags) ->
     )
     for mask, name, site in groups:
         rows = np.flatnonzero(mask)
-        _paint_text(painter, frame, rows, nodes.names, frame.lettering.name, name)
+        for face, chosen in _name_faces(frame, rows):
+            _paint_text(painter, frame, chosen, nodes.names, face, name)
         if frame.scale >= READABLE_SITE:
             with_site = np.array([row for row in rows if nodes.sites[row]], dtype=np.intp)
             _paint_text(
                 painter, frame, with_site, nodes.sites, frame.lettering.site, site, below=True
             )
+
+
+def _name_faces(frame: Frame, rows: Rows) -> list[tuple[Face, Rows]]:
+    """Return which names take which face: the larger one where no site stands below the
+    name and the plate has room for it."""
+    usual, large = frame.lettering.name, frame.lettering.large_name
+    if frame.scale >= READABLE_SITE:
+        return [(usual, rows)]
+    names = frame.contents.nodes.names
+    room = frame.lines.boxes[rows, 2] - frame.lines.boxes[rows, 0] - 4
+    room += np.where(frame.contents.nodes.segment[rows], 30.0, 0.0)  # no outline to touch
+    widths = np.array([large.width(names[row]) for row in rows])
+    return [(large, rows[widths <= room]), (usual, rows[widths > room])]
 
 
 def _paint_text(

@@ -8,10 +8,11 @@ from PySide6.QtGui import QColor, QPainter
 
 from netsketch.sheet.contents import Floats, Rows
 from netsketch.sheet.frame import Frame
+from netsketch.sheet.lettering import LARGER_BELOW
 from netsketch.sheet.paint_links import pen_of
 from netsketch.sheet.paths import corners_of, draw_shapes, polylines
 
-READABLE = 0.5
+READABLE = 0.42
 """The least scale at which tags are painted."""
 
 
@@ -24,15 +25,20 @@ def paint_tags(painter: QPainter, frame: Frame) -> None:
 
 
 def _paint_texts(painter: QPainter, frame: Frame, rows: Rows) -> None:
-    tags, look, face = frame.tags, frame.look, frame.lettering.tag
+    tags, look, face, grown = frame.tags, frame.look, frame.lettering.tag, 0.0
+    if frame.scale < LARGER_BELOW:
+        face = frame.lettering.large_tag
+        grown = face.font.pixelSize() / frame.lettering.tag.font.pixelSize() - 1
+    size = (frame.tag_boxes[:, 2:] - frame.tag_boxes[:, :2]) * grown / 2
+    all_boxes = frame.tag_boxes + np.concatenate([-size, size], axis=1)
     painter.setPen(Qt.PenStyle.NoPen)
     painter.setBrush(QColor(look.tag))
-    draw_shapes(painter, corners_of(frame.tag_boxes[rows]))
+    draw_shapes(painter, corners_of(all_boxes[rows]))
     painter.setFont(face.font)
     named = np.ones(len(rows), bool) if frame.marks is None else frame.marks.links[tags.link[rows]]
     for colour, chosen in ((look.faded, rows[~named]), (look.ink, rows[named])):
         painter.setPen(QColor(colour))
-        boxes = frame.tag_boxes[chosen]
+        boxes = all_boxes[chosen]
         lefts = (boxes[:, 0] + 4).tolist()
         bases = (boxes[:, 1:4:2].mean(axis=1) + face.rise).tolist()
         for row, left, base in zip(chosen.tolist(), lefts, bases, strict=True):
