@@ -3,9 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from typing import TYPE_CHECKING
 
 from netsketch.model import Plan
-from netsketch.routing import NextHop
+
+if TYPE_CHECKING:
+    from netsketch.routing import NextHop
 
 
 def next_hops_text(plan: Plan, hops: Iterable[NextHop]) -> str:

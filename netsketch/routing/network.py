@@ -195,8 +195,9 @@ class Network:
     def after(self, plan: Plan, steps: Iterable[Step]) -> Network:
         """Return the network of ``plan`` once ``steps`` have been applied to it.
 
-        Equal to ``compile_plan(plan)``; shares the structure unless something that
-        carries traffic was added or removed.
+        Equal to ``compile_plan(plan)``; the same object where nothing that routes or
+        figures depend on has changed (a move, a name), and sharing the structure unless
+        something that carries traffic was added or removed.
         """
         items: list[Item] = []
         for step in steps:
@@ -204,7 +205,8 @@ class Network:
                 if isinstance(step.item, Router | Segment | Link):
                     return compile_plan(plan)
             elif isinstance(step, Change):
-                items.append(step.new)
+                if _carries(step.old) != _carries(step.new):
+                    items.append(step.new)
             elif isinstance(step, ChangeSettings) and step.old.cost_style != step.new.cost_style:
                 return compile_plan(plan)
         return self._changed(items) if items else self
@@ -225,6 +227,15 @@ class Network:
                 vertex_up[v] = item.up
                 drained[v] = isinstance(item, Router) and item.drained
         return Network(s, cost, link_up, vertex_up, drained, delay, capacity, self.highest)
+
+
+def _carries(item: Item) -> tuple[object, ...]:
+    """Return what the arrays hold of an item."""
+    if isinstance(item, Link):
+        return item.cost, item.cost_back, item.up, item.delay_ms, item.capacity_mbps
+    if isinstance(item, Router):
+        return item.up, item.drained
+    return (item.up,) if isinstance(item, Segment) else ()
 
 
 def _known(value: float | None) -> float:

@@ -19,7 +19,7 @@ from netsketch.analysis import (
     compare_networks,
     forwarding_table,
 )
-from netsketch.model import ChangeSet, LinkState, Plan, Router, Segment, Trial, edits
+from netsketch.model import ChangeSet, ChangeTrial, LinkState, Plan, Router, Segment, Trial, edits
 from netsketch.readings import outward as outward_reading
 from netsketch.readings import path as path_reading
 from netsketch.readings.reading import Reading
@@ -84,10 +84,13 @@ class Answers:
             self.ready = len(ledger) > 0
 
     def _follow(self, changes: ChangeSet) -> None:
-        if self._network is not None:
-            self._network = self._network.after(self._document.plan, changes.steps)
-        self._in_trial = None
-        self._routes.clear()
+        before = self._network
+        if before is not None:
+            self._network = before.after(self._document.plan, changes.steps)
+        tried = any(isinstance(step, ChangeTrial) for step in changes.steps)
+        if tried or self._network is not before:
+            self._in_trial = None
+            self._routes.clear()
 
     @property
     def network(self) -> Network:

@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QObject, Signal
 
-from netsketch.model import ChangeSet, Edit, PlanError, Router
+from netsketch.model import Change, ChangeSet, Edit, PlanError, Router, Segment, Step, edits
 from netsketch.readings.reading import Reading
 from netsketch.session.document import Document
 from netsketch.window.relay import Relay
@@ -50,6 +50,8 @@ class Desk(QObject):
         self.path: Path | None = None
         self.ledger: Ledger | None = None
         self.is_computing = False
+        self._compared: tuple[object, object] = (None, None)
+        """The two networks that the ledger was last asked about."""
 
     # -- the document -------------------------------------------------------------------
 
@@ -124,8 +126,9 @@ class Desk(QObject):
         if not plan.trial:
             self.wants_effect = False
         self.plan_changed.emit()
-        self._answer()
-        self._ask_ledger()
+        if not all(_is_move(step) for step in changes.steps):
+            self._answer()
+            self._ask_ledger()
 
     # -- what is asked --------------------------------------------------------------------
 
@@ -165,6 +168,10 @@ class Desk(QObject):
         if self.answers is None:
             return
         plan = self.document.plan
+        compared = self.answers.network, self.answers.in_trial
+        if all(one is other for one, other in zip(compared, self._compared, strict=True)):
+            return
+        self._compared = compared
         self.is_computing = bool(plan.trial)
         if not plan.trial:
             self.ledger = None
@@ -182,6 +189,15 @@ class Desk(QObject):
         else:
             self.ledger = result if self.document.plan.trial else None
         self.ledger_changed.emit()
+
+
+def _is_move(step: Step) -> bool:
+    """Tell whether a step only moves a node on the sheet."""
+    return (
+        isinstance(step, Change)
+        and isinstance(step.new, Router | Segment)
+        and edits.replace(step.old, x=step.new.x, y=step.new.y) == step.new
+    )
 
 
 def _load_core(document: Document) -> None:

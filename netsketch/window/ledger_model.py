@@ -13,6 +13,7 @@ import numpy.typing as npt
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt
 
 from netsketch.model import Plan
+from netsketch.reports.words import next_hops_text, outcome_text
 
 if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
@@ -131,8 +132,6 @@ class LedgerModel(QAbstractTableModel):
             yield list(self._texts(int(self._chosen[index])))
 
     def _texts_of(self, row: int) -> tuple[str, ...]:
-        from netsketch.reports.words import next_hops_text, outcome_text
-
         assert self.ledger is not None
         found = self.ledger.row(row)
         before, after = found.cost_before, found.cost_after

@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Any
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt
 
 from netsketch.model import Plan
-from netsketch.readings.reading import Reading
+from netsketch.reports.words import delay_text, next_hops_text, outcome_text
 
 if TYPE_CHECKING:
     from netsketch.analysis.table import RouteRow
@@ -39,35 +39,48 @@ Index = QModelIndex | QPersistentModelIndex
 
 
 class Line:
-    """One row as it is shown: the route and its texts."""
+    """One row as it is shown: texts and sort keys are made when something asks."""
 
-    __slots__ = ("cells", "keys", "row")
+    __slots__ = ("_cells", "_table", "name", "outcome", "row")
 
-    def __init__(self, row: RouteRow, plan: Plan, reading: Reading, outcome: str | None) -> None:
-        from netsketch.reports.words import delay_text, next_hops_text, outcome_text
+    def __init__(self, row: RouteRow, name: str, outcome: str | None, table: RouteTable) -> None:
+        self.row, self.name, self.outcome, self._table = row, name, outcome, table
+        self._cells: tuple[str, ...] | None = None
 
-        mark = reading.plates.get(row.to)
-        letters = " ".join(reading.first_hops[i].letter for i in mark.letters) if mark else ""
-        name = plan.nodes[row.to].label
-        self.row = row
-        self.cells = (
-            name,
-            outcome_text(outcome),
-            letters,
-            next_hops_text(plan, row.next_hops) if row.cost is not None else "cut off",
-            "–" if row.cost is None else str(row.cost),
-            "" if row.hops is None else str(row.hops),
-            delay_text(row.delay_ms),
-        )
-        self.keys: tuple[Any, ...] = (
-            name.casefold(),
-            outcome or "~",
-            letters,
-            self.cells[3].casefold(),
-            _FAR if row.cost is None else row.cost,
-            _FAR if row.hops is None else row.hops,
-            _FAR if row.delay_ms is None else row.delay_ms[0],
-        )
+    @property
+    def letters(self) -> str:
+        """The letters of its first hops."""
+        return self._table.letters(self.row.to)
+
+    @property
+    def cells(self) -> tuple[str, ...]:
+        """The texts of its columns."""
+        if self._cells is None:
+            row = self.row
+            self._cells = (
+                self.name,
+                outcome_text(self.outcome),
+                self.letters,
+                "cut off" if row.cost is None else self._table.next_hops(row),
+                "–" if row.cost is None else str(row.cost),
+                "" if row.hops is None else str(row.hops),
+                delay_text(row.delay_ms),
+            )
+        return self._cells
+
+    def key(self, column: int) -> Any:
+        """Return what a column sorts by; what is not known comes last."""
+        row = self.row
+        if column == 0:
+            return self.name.casefold()
+        if column == CHANGE:
+            return self.outcome or "~"
+        if column in (2, 3):
+            return self.cells[column].casefold()
+        if column == 6:
+            return _FAR if row.delay_ms is None else row.delay_ms[0]
+        value = row.cost if column == 4 else row.hops
+        return _FAR if value is None else value
 
 
 class RouteTable(QAbstractTableModel):
@@ -75,6 +88,8 @@ class RouteTable(QAbstractTableModel):
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
+        self._outward: Outward | None = None
+        self._plan = Plan()
         self._lines: list[Line] = []
         self._shown: list[Line] = []
         self._filter = ""
@@ -83,14 +98,25 @@ class RouteTable(QAbstractTableModel):
     def show(self, outward: Outward | None, plan: Plan) -> None:
         """Show another router's routes, or none."""
         self.beginResetModel()
+        self._outward, self._plan = outward, plan
         self._lines = []
         if outward is not None:
             self._lines = [
-                Line(row, plan, outward.reading, outward.changed.get(row.to))
+                Line(row, plan.nodes[row.to].label, outward.changed.get(row.to), self)
                 for row in outward.rows
             ]
         self._choose()
         self.endResetModel()
+
+    def letters(self, destination: str) -> str:
+        """Return the letters of the first hops to a destination, as on the sheet."""
+        assert self._outward is not None
+        reading = self._outward.reading
+        return " ".join(reading.first_hops[i].letter for i in reading.plates[destination].letters)
+
+    def next_hops(self, row: RouteRow) -> str:
+        """Return a row's next hops in words."""
+        return next_hops_text(self._plan, row.next_hops)
 
     def set_filter(self, text: str) -> None:
         """Show only rows that hold ``text`` in a name, an id, a next hop or a change."""
@@ -118,7 +144,7 @@ class RouteTable(QAbstractTableModel):
                 or any(wanted in cell.casefold() for cell in line.cells)
             ]
         column, backwards = self._order
-        self._shown = sorted(lines, key=lambda line: line.keys[column], reverse=backwards)
+        self._shown = sorted(lines, key=lambda line: line.key(column), reverse=backwards)
 
     def line(self, index: int) -> Line:
         """Return a shown row."""
