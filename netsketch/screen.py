@@ -106,7 +106,7 @@ def _x11_opens() -> bool:
     xcb = ctypes.CDLL("libxcb.so.1")
     xcb.xcb_connect.restype = ctypes.c_void_p
     connection = ctypes.c_void_p(xcb.xcb_connect(None, None))
-    opened = xcb.xcb_connection_has_error(connection) == 0
+    opened = bool(xcb.xcb_connection_has_error(connection) == 0)
     xcb.xcb_disconnect(connection)
     return opened
 

@@ -8,7 +8,7 @@ import sys
 from collections.abc import Sequence
 from pathlib import Path
 
-from netsketch import screen
+from netsketch import compiled, screen
 from netsketch.cli.main import COMMANDS, refused, window_options
 from netsketch.cli.main import main as run_command
 
@@ -43,4 +43,8 @@ def run() -> None:
     """Run the program with the words it was called with, and leave with its exit code."""
     if isinstance(sys.stdout, io.TextIOWrapper):  # a name the terminal cannot show is no failure
         sys.stdout.reconfigure(errors="backslashreplace")
+    try:
+        compiled.choose_folder(os.environ)
+    except OSError as error:
+        sys.exit(refused(f"there is no folder for temporary files: {error}"))
     sys.exit(main(sys.argv[1:]))
