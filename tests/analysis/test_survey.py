@@ -38,7 +38,7 @@ def assert_as_defined(plan: Plan, found: Survey) -> None:
         assert totals == totals_by_definition(plan, failure), failure
 
 
-@settings(deadline=None, max_examples=50)
+@settings(deadline=None, max_examples=200)
 @given(plan=strategies.plans(with_trial=False, max_nodes=7, max_links=10))
 def test_totals_on_random_plans(plan: Plan) -> None:
     network = compile_plan(plan)

@@ -17,7 +17,7 @@ from pathlib import Path
 
 from netsketch.analysis import failures_of, survey
 from netsketch.model import Plan
-from netsketch.routing import Network
+from netsketch.routing import AllPairs, Network
 from tests.benchmarks.core import course, per_changed_pair
 from tests.benchmarks.plot import scatter
 
@@ -35,6 +35,8 @@ def main() -> None:
         track = course(routers, chosen.short)
         pairs = failures_of(track.plan, "link-pairs") if routers == 100 else []
         races = [track.survey("link-pairs", pairs, track.sample)] if pairs else track.races()
+        kept = AllPairs(track.network).distances.nbytes / 1e6
+        print(f"{routers:,} routers, {len(track.plan.links):,} links; all pairs {kept:.1f} MB")
         repeats = 3 if chosen.short else 5
         for race in races:
             race.run(repeats)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import random
+import time
 from collections.abc import Callable
 
 import networkx as nx
@@ -173,8 +174,6 @@ class Course:
 
 def per_changed_pair(network: Network, links: list[str]) -> list[tuple[int, float]]:
     """Return (changed pairs, seconds) of taking each link down with all pairs current."""
-    import time
-
     pairs, found = AllPairs(network), []
     for link in links:
         down = network.laid_over(Trial((LinkState(link),)))

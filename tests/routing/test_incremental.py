@@ -14,7 +14,7 @@ from scipy.sparse import coo_array
 from scipy.sparse.csgraph import dijkstra
 
 from netsketch.formats import native
-from netsketch.model import Edit, LinkState, Plan, Trial
+from netsketch.model import Edit, LinkState, Plan, Router, Trial, edits
 from netsketch.routing import BLOCKED, AllPairs, Network, Routes, compile_plan
 from tests import reference, strategies
 from tests.published import plan_of
@@ -160,3 +160,16 @@ def test_graph_of_reference_has_both_directions() -> None:
     graph = reference.graph_of(plan_of("a-b 1/2"))
     assert isinstance(graph, nx.MultiDiGraph)
     assert {(u, v): d for u, v, d in graph.edges(data="cost")} == {("a", "b"): 1, ("b", "a"): 2}
+
+
+def test_all_pairs_of_5000_routers_fit_in_250_mb() -> None:
+    """Distances of 32 bits hold every OSPF plan of this size: 100 MB; wide IS-IS costs
+    need 64 bits: 200 MB."""
+    ids = [f"r{i}" for i in range(5000)]
+    plan = Plan()
+    plan.apply(edits.add(plan, *(Router(id=key) for key in ids)))
+    bytes_each = np.dtype(compile_plan(plan).distance_type).itemsize
+    assert bytes_each * 5000 * 5000 == 100_000_000
+    plan.apply(edits.set_settings(plan, cost_style="isis-wide"))
+    bytes_each = np.dtype(compile_plan(plan).distance_type).itemsize
+    assert bytes_each * 5000 * 5000 <= 250_000_000
