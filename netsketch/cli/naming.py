@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from netsketch.cli.refusal import InputError
+from netsketch.formats.errors import one_line
 from netsketch.model import LinkState, NodeState, Plan, Router, TrialChange, quoted
 
 MOST_NAMED = 8
@@ -71,6 +72,6 @@ def _listed(ids: list[str]) -> str:
 
 
 def named(plan: Plan, key: str) -> str:
-    """Return "r1 Quay-1", or the id alone where that is the name."""
+    """Return "r1 Quay-1" on one line, or the id alone where that is the name."""
     label = plan.nodes[key].label
-    return key if label == key else f"{key} {label}"
+    return one_line(key if label == key else f"{key} {label}")
