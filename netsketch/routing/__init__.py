@@ -1,6 +1,7 @@
 """The shortest-path core: arrays, distances, incremental updates, next hops, paths."""
 
 from netsketch.routing.allpairs import AllPairs, Cancelled, Update, distances_from, never
+from netsketch.routing.flow import Sink, distances_to
 from netsketch.routing.network import BLOCKED, Network, Structure, compile_plan
 from netsketch.routing.routes import NextHop, Routes, ShareOfLink
 
@@ -12,9 +13,11 @@ __all__ = [
     "NextHop",
     "Routes",
     "ShareOfLink",
+    "Sink",
     "Structure",
     "Update",
     "compile_plan",
     "distances_from",
+    "distances_to",
     "never",
 ]

@@ -12,6 +12,7 @@ import numpy.typing as npt
 
 from netsketch.routing import derive
 from netsketch.routing.allpairs import distances_from, unreached
+from netsketch.routing.flow import Sink
 from netsketch.routing.network import Distances, Ints, Network
 
 Words = npt.NDArray[np.uint64]
@@ -179,55 +180,23 @@ class Routes:
         """Return the links traffic to ``target`` uses and the part of it on each, in
         order of travel.
 
-        Each router splits equally over its next hops (RFC 2991, 2992 practice); a segment
-        passes on what came for each router beyond it.
+        The split is that of :mod:`netsketch.routing.flow`.
         """
-        s = self.network.structure
-        onward = self._onward_to(target)
-        flow: dict[int, float] = {self.source: 1.0}
-        found = []
-        for u in (int(v) for v in self.order if int(v) in onward):
-            out = onward[u]
-            parts = [self._part(arc, out, onward, target) for arc in out]
-            total = sum(parts)
-            for arc, part in zip(out, parts, strict=True):
-                share = flow.get(u, 0.0) * part / total
-                v = int(s.head[arc])
-                flow[v] = flow.get(v, 0.0) + share
-                link = s.link_ids[s.link[arc]]
-                found.append(ShareOfLink(link, s.vertex_ids[u], s.vertex_ids[v], share))
-        return found
-
-    def _onward_to(self, target: int) -> dict[int, list[int]]:
-        """Return the tight arcs on a path to ``target``, by tail."""
-        s = self.network.structure
-        onward: dict[int, list[int]] = {}
         if self.cost(target) is None:
-            return onward
-        ahead, seen = [target], {target}
-        while ahead:
-            v = ahead.pop()
-            for arc in s.in_arc[s.in_ptr[v] : s.in_ptr[v + 1]]:
-                if not self.tight[arc]:
-                    continue
-                u = int(s.tail[arc])
-                onward.setdefault(u, []).append(int(arc))
-                if u not in seen:
-                    seen.add(u)
-                    ahead.append(u)
-        for out in onward.values():
-            out.sort()
-        return onward
-
-    def _part(
-        self, arc: int, beside: list[int], onward: dict[int, list[int]], target: int
-    ) -> float:
-        """Return how many next hops an arc stands for: out of a router one for each router
-        beyond a segment; out of a segment one for each router, parallel arcs sharing it."""
+            return []
         s = self.network.structure
-        tail, head = int(s.tail[arc]), int(s.head[arc])
-        if tail >= s.routers:
-            return 1.0 / sum(int(s.head[other]) == head for other in beside)
-        if head < s.routers or head == target:
-            return 1.0
-        return float(len({int(s.head[a]) for a in onward[head]}))
+        amount = np.zeros(s.vertices)
+        amount[self.source] = 1.0
+        flow = Sink(self.network, target).pour(amount)
+        place = np.empty(s.vertices, np.int64)
+        place[self.order] = np.arange(len(self.order))
+        used = np.flatnonzero(flow)
+        return [
+            ShareOfLink(
+                s.link_ids[s.link[a]],
+                s.vertex_ids[s.tail[a]],
+                s.vertex_ids[s.head[a]],
+                float(flow[a]),
+            )
+            for a in used[np.argsort(place[s.tail[used]], kind="stable")]
+        ]
