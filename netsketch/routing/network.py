@@ -192,6 +192,15 @@ class Network:
                 vertex_up[s.vertex_of[change.node]] = change.up
         return replace(self, cost=cost, link_up=link_up, vertex_up=vertex_up, drained=drained)
 
+    def without_arc(self, arc: int) -> Network:
+        """Return this network with one direction of one link carrying nothing."""
+        found = replace(self)
+        for name in ("weight", "transit"):
+            weight = getattr(self, name).copy()
+            weight[arc] = BLOCKED
+            object.__setattr__(found, name, weight)
+        return found
+
     def after(self, plan: Plan, steps: Iterable[Step]) -> Network:
         """Return the network of ``plan`` once ``steps`` have been applied to it.
 
