@@ -10,7 +10,7 @@ from netsketch.analysis import pair
 from netsketch.model import LinkState, Plan, Segment, Trial
 from netsketch.routing import Network, NextHop, Routes, compile_plan
 from tests import open_data, reference, strategies
-from tests.published import plan_of, rfc2328_figure_2
+from tests.published import plan_of
 
 
 def routes_of(network: Network, router: str) -> Routes:
@@ -87,16 +87,22 @@ def test_rfc5286_figure_1_second_best() -> None:
     assert found == pair.OtherWay((NextHop("S-N1", "N1"),), 11, 2)
 
 
-def test_ways_part_where_costs_differ() -> None:
-    """RFC 2328, Figure 2: RT3-RT6 costs 8 one way and 6 the other; RT5 to RT3 and back."""
-    network = compile_plan(rfc2328_figure_2())
-    vertex = network.structure.vertex_of
-    out, back = routes_of(network, "RT6"), routes_of(network, "RT3")
-    assert pair.parting(out, back, vertex["RT3"]) is None
-    out, back = routes_of(network, "RT5"), routes_of(network, "RT3")
-    going = {share.link for share in out.shares(vertex["RT3"])}
-    returning = {share.link for share in back.shares(vertex["RT5"])}
-    assert (pair.parting(out, back, vertex["RT3"]) is None) == (going == returning)
+@pytest.mark.parametrize(
+    ("links", "source", "target", "parts_at"),
+    [
+        ("a-b 1", "a", "b", None),
+        ("a-b 1/10, b-c 1, c-a 1", "a", "b", "a"),
+        ("z-a 1, a-b 1/10, b-c 1, c-a 1", "z", "b", "a"),
+        # The way back has a second, equal-cost path that the way out has not.
+        ("a-b 1/2, a-c 5/1, c-b 1", "a", "b", "a"),
+    ],
+)
+def test_where_way_out_and_way_back_part(
+    links: str, source: str, target: str, parts_at: str | None
+) -> None:
+    network = compile_plan(plan_of(links))
+    out, back = routes_of(network, source), routes_of(network, target)
+    assert pair.parting(out, back, back.source) == parts_at
 
 
 @pytest.mark.parametrize("key", ["sndlib/abilene", "sndlib/polska"])

@@ -15,6 +15,10 @@ from tests.published import plan_of
 HIGHEST = COST_RANGES["isis-narrow"][1]
 
 
+def _part(share: float) -> str:
+    return "all" if share > 1 - 1e-9 else "shared"
+
+
 def sweep(plan: Plan, link: str, back: bool) -> dict[tuple[str, str], dict[int, str]]:
     """Return pair -> cost -> "all" or "shared", by computing every cost."""
     found: dict[tuple[str, str], dict[int, str]] = {}
@@ -33,7 +37,7 @@ def sweep(plan: Plan, link: str, back: bool) -> dict[tuple[str, str], dict[int, 
                 mine = [x for x in shares if (x.link, x.tail) == (link, tail)]
                 if mine:
                     pair = s.vertex_ids[source], s.vertex_ids[target]
-                    found.setdefault(pair, {})[cost] = (
+                    found.setdefault(pair, {})[cost] = _part(mine[0].share)
                         "all" if mine[0].share > 1 - 1e-9 else "shared"
                     )
     return found
