@@ -38,8 +38,6 @@ def sweep(plan: Plan, link: str, back: bool) -> dict[tuple[str, str], dict[int, 
                 if mine:
                     pair = s.vertex_ids[source], s.vertex_ids[target]
                     found.setdefault(pair, {})[cost] = _part(mine[0].share)
-                        "all" if mine[0].share > 1 - 1e-9 else "shared"
-                    )
     return found
 
 
