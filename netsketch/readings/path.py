@@ -32,6 +32,36 @@ def path(out: Routes, back: Routes | None, target: int, labels: tuple[str, str])
     )
 
 
+def before_and_after(
+    before: Routes, after: Routes, target: int, labels: tuple[str, str]
+) -> Reading:
+    """Return the paths to vertex ``target`` in the plan and in the trial: the links of
+    both, those only the plan used ("before") and those only the trial uses ("after")."""
+    ids = after.network.structure.vertex_ids
+    source = ids[after.source]
+    old, new = before.shares(target), after.shares(target)
+    both = {(share.link, share.tail) for share in old} & {(share.link, share.tail) for share in new}
+    marks: dict[str, list[Travel]] = {}
+    for shares, role in ((old, "before"), (new, "after")):
+        kept = [share for share in shares if (share.link, share.tail) not in both]
+        for link, travels in _travels(after.network, kept, role).items():  # type: ignore[arg-type]
+            marks.setdefault(link, []).extend(travels)
+    same = [share for share in new if (share.link, share.tail) in both]
+    for link, travels in _travels(after.network, same, "path").items():
+        marks.setdefault(link, []).extend(travels)
+    plates = {share.tail: PlateMark("reached") for share in (*old, *new)}
+    plates[source] = PlateMark("focus")
+    cost = after.cost(target)
+    plates[ids[target]] = PlateMark("cut off" if cost is None else "target", cost=cost)
+    return Reading(
+        kind="effect",
+        focus=(source, ids[target]),
+        title=f"{labels[0]} to {labels[1]}, before and after",
+        links={link: LinkMark(tuple(travels)) for link, travels in marks.items()},
+        plates=plates,
+    )
+
+
 def _travels(
     network: Network, shares: Iterable[ShareOfLink], role: TravelRole
 ) -> dict[str, list[Travel]]:

@@ -15,20 +15,20 @@ from netsketch.analysis import (
     Ledger,
     RouteRow,
     changed_destinations,
-    compare,
-    compare_networks,
     forwarding_table,
+    pair,
 )
+from netsketch.analysis.inward import demand_on_arcs, inward_table
+from netsketch.analysis.tipping import Tipping
 from netsketch.model import ChangeSet, ChangeTrial, LinkState, Plan, Router, Segment, Trial, edits
+from netsketch.readings import inward as inward_reading
 from netsketch.readings import outward as outward_reading
 from netsketch.readings import path as path_reading
 from netsketch.readings.reading import Reading
-from netsketch.routing import AllPairs, Network, Routes, ShareOfLink, compile_plan, never
+from netsketch.routing import Network, Routes, ShareOfLink, Sink, compile_plan, never
+from netsketch.session import pairs
 from netsketch.session.document import Document
-
-MOST_KEPT = 5_000
-"""Routers up to which all pairs are kept: 100 MB for the plan and as much for the trial
-with distances of 32 bits, twice that with 64."""
+from netsketch.session.pairs import PairStates
 
 
 @dataclass(frozen=True)
@@ -39,6 +39,16 @@ class Outward:
     reading: Reading
     rows: list[RouteRow]
     changed: dict[str, str]
+
+
+@dataclass(frozen=True)
+class Inward:
+    """How everyone reaches a router or segment in the trial: a row for each router, and
+    for each link on a way (link, tail, head) how many routers and Mbit/s it carries."""
+
+    reading: Reading
+    rows: list[RouteRow]
+    links: list[tuple[str, str, str, int, float]]
 
 
 @dataclass(frozen=True)
@@ -54,6 +64,30 @@ class Path:
     cost: int | None
     links: list[ShareOfLink]
     path_count: int
+
+
+@dataclass(frozen=True)
+class Way:
+    """One direction of a pair: its hops, cost, least and most delay, number of paths."""
+
+    source: str
+    target: str
+    hops: list[pair.Hop]
+    cost: int | None
+    delay_ms: tuple[float, float] | None
+    path_count: int
+
+
+@dataclass(frozen=True)
+class Pair:
+    """Everything about the way between two routers: there, back (``None`` where the target
+    is a segment), where they part, the best other way, and what if a link of it fails."""
+
+    out: Way
+    back: Way | None
+    parts_at: str | None
+    other_way: pair.OtherWay | None
+    if_down: list[pair.IfDown]
 
 
 class Answers:
@@ -81,6 +115,7 @@ class Answers:
             before, after = Routes(network, 0), Routes(trial, 0)
             outward_reading.effect(before, after, changed_destinations(before, after), "")
             forwarding_table(after)
+            after.shares(2)
             self.ready = len(ledger) > 0
 
     def _follow(self, changes: ChangeSet) -> None:
@@ -151,39 +186,72 @@ class Answers:
             out.path_count(vertex),
         )
 
+    def changed_path(self, source: str, target: str) -> Reading:
+        """Return the reading of a pair's way in the plan and in the trial, old and new."""
+        before, after = self.routes(source, planned=True), self.routes(source)
+        vertex = after.network.structure.vertex_of[target]
+        labels = self._label(source), self._label(target)
+        return path_reading.before_and_after(before, after, vertex, labels)
+
+    def pair(self, source: str, target: str) -> Pair:
+        """Return everything about the way from a router to a router or segment."""
+        out = self.routes(source)
+        vertex = out.network.structure.vertex_of[target]
+        is_router = isinstance(self._document.plan.nodes[target], Router)
+        back = self.routes(target) if is_router else None
+        return Pair(
+            self._way(out, vertex),
+            self._way(back, out.source) if back else None,
+            pair.parting(out, back, vertex) if back else None,
+            pair.other_way(out, vertex),
+            pair.if_down(out, vertex),
+        )
+
+    def _way(self, routes: Routes, vertex: int) -> Way:
+        ids = routes.network.structure.vertex_ids
+        return Way(
+            ids[routes.source],
+            ids[vertex],
+            pair.hops(routes, vertex),
+            routes.cost(vertex),
+            routes.delay_ms(vertex),
+            routes.path_count(vertex),
+        )
+
+    def inward(self, node: str) -> Inward:
+        """Return how everyone reaches a router or segment in the trial."""
+        network = self.in_trial
+        s = network.structure
+        sink = Sink(network, s.vertex_of[node])
+        counts = sink.sources_on_arcs()
+        mbps = demand_on_arcs(sink, self._document.plan.demands)
+        links = [
+            (
+                s.link_ids[s.link[a]], s.vertex_ids[s.tail[a]], s.vertex_ids[s.head[a]],
+                int(counts[a]), float(mbps[a]),
+            )
+            for a in sink.arcs
+        ]  # fmt: skip
+        reading = inward_reading.inward(sink, counts, self._label(node))
+        return Inward(reading, inward_table(sink), sorted(links, key=lambda row: -row[3]))
+
+    def tipping_task(self, link: str) -> Callable[[Callable[[], bool]], tuple[Tipping, Tipping]]:
+        """Return the work that computes the tipping costs of a link in the trial, out and
+        back: for the thread of the ledger."""
+        network, states = self.in_trial, self._pairs
+        return lambda cancelled: states.tipping(network, link, cancelled)
+
     @property
     def keeps_all_pairs(self) -> bool:
         """Whether the plan is small enough to keep all pairs current; above that every
         answer still comes, the ledger more slowly."""
-        return self.network.structure.routers <= MOST_KEPT
+        return self.network.structure.routers <= pairs.MOST_KEPT
 
     def ledger_task(self) -> Callable[[Callable[[], bool]], Ledger]:
         """Return the work that computes the ledger of the trial as it stands now: for one
         background thread at a time, with a function that tells whether to stop."""
-        before, after, pairs = self.network, self.in_trial, self._pairs
-        return lambda cancelled: pairs.ledger(before, after, cancelled)
-
-
-class PairStates:
-    """The distances between all pairs in the plan and in the trial, each moved on by what
-    changed since they were last asked for. Above :data:`MOST_KEPT` routers nothing is kept
-    and every ledger is computed anew, a few sources at a time."""
-
-    def __init__(self) -> None:
-        self._planned: AllPairs | None = None
-        self._tried: AllPairs | None = None
-
-    def ledger(self, before: Network, after: Network, cancelled: Callable[[], bool]) -> Ledger:
-        """Return the ledger of ``after`` against ``before``. Raises ``Cancelled``."""
-        if before.structure.routers > MOST_KEPT:
-            self._planned = self._tried = None
-            return compare_networks(before, after, cancelled)
-        if self._planned is None or self._tried is None:
-            self._planned = AllPairs(before, cancelled)
-            self._tried = self._planned.copy()
-        self._planned.move_to(before)
-        self._tried.move_to(after)
-        return compare(self._planned, self._tried, cancelled)
+        before, after, states = self.network, self.in_trial, self._pairs
+        return lambda cancelled: states.ledger(before, after, cancelled)
 
 
 def _small_plan() -> Plan:

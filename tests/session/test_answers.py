@@ -8,7 +8,7 @@ from hypothesis import strategies as st
 from netsketch.analysis import RouteRow
 from netsketch.model import Plan, edits
 from netsketch.routing import NextHop, never
-from netsketch.session import answers
+from netsketch.session import pairs
 from netsketch.session.answers import Answers
 from netsketch.session.document import Document
 from tests import reference, strategies
@@ -94,7 +94,7 @@ def test_large_plans_keep_no_pairs_and_answer_the_same(monkeypatch) -> None:  # 
     document.apply(edits.toggle_down(document.plan, nodes=["RT10"]))
     kept = live.ledger_task()(never)
     assert live.keeps_all_pairs
-    monkeypatch.setattr(answers, "MOST_KEPT", 5)
+    monkeypatch.setattr(pairs, "MOST_KEPT", 5)
     assert not live.keeps_all_pairs
     assert list(live.ledger_task()(never)) == list(kept)
 
