@@ -85,27 +85,40 @@ def write_picture(
     Raises FormatError for another suffix, for a PNG beyond 40 million pixels and when the
     file cannot be written. A file that is there is replaced only by a whole picture.
     """
-    writer = WRITERS.get(path.suffix.lower())
-    if writer is None:
+    suffix = path.suffix.lower()
+    if suffix not in WRITERS:
         raise FormatError(str(path), "", f"a picture is one of {', '.join(WRITERS)}")
-    _ensure_application()
+    try:
+        data = picture_bytes(plan, reading, suffix, look, width)
+    except PictureError as error:
+        raise FormatError(str(path), "", str(error)) from error
+    write_bytes(path, data)
+
+
+def picture_bytes(
+    plan: Plan,
+    reading: Reading | None,
+    suffix: str,
+    look: Look = LIGHT,
+    width: int | None = None,
+) -> bytes:
+    """Return what :func:`write_picture` writes to a file with this suffix (".svg"). Raises
+    :class:`PictureError`."""
+    ensure_application()
     picture = Picture(_placed(plan), reading, look)
     data = QByteArray()
     buffer = QBuffer(data)
     buffer.open(QIODevice.OpenModeFlag.WriteOnly)
-    try:
-        writer(picture, buffer, width)
-    except PictureError as error:
-        raise FormatError(str(path), "", str(error)) from error
+    WRITERS[suffix](picture, buffer, width)
     buffer.close()
-    write_bytes(path, bytes(data.data()))
+    return bytes(data.data())
 
 
 _started: list[QGuiApplication] = []
 """Keeps what was started here until the process ends."""
 
 
-def _ensure_application() -> None:
+def ensure_application() -> None:
     """Start a Qt application unless one runs; it needs no screen."""
     if isinstance(QGuiApplication.instance(), QGuiApplication):
         return

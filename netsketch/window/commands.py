@@ -7,8 +7,9 @@ from functools import partial
 from typing import TYPE_CHECKING
 
 from netsketch.model import PlanError, Segment, edits
+from netsketch.reports import cautions
 from netsketch.sheet.editors import cost_hint, cost_text, read_costs
-from netsketch.window import actions, cautions
+from netsketch.window import actions
 
 if TYPE_CHECKING:
     from netsketch.window.main_window import MainWindow
@@ -43,8 +44,9 @@ def handlers(window: MainWindow) -> dict[str, Callable[[], object]]:
         "try_cost": partial(_try_cost, w),
         "adopt": lambda: desk.apply(edits.adopt(desk.document.plan)),
         "discard": lambda: desk.apply(edits.discard(desk.document.plan)),
-        "outward": partial(desk.show_effect, False),
-        "effect": partial(desk.show_effect, True),
+        "outward": partial(desk.show_kind, "outward"),
+        "inward": partial(desk.show_kind, "inward"),
+        "effect": partial(desk.show_kind, "effect"),
         "keys": lambda: window.ask.tell("Keys", actions.keys_text()),
         "cautions": lambda: window.ask.tell("Cautions", cautions.as_html()),
     }
