@@ -66,6 +66,8 @@ ENTRIES: tuple[Entry, ...] = (
     Entry("adopt", "Trial", "Adopt", "Make the trial the plan", "Ctrl+Return"),
     Entry("discard", "Trial", "Discard", "Drop every change of the trial", "Ctrl+Backspace"),
     Entry("outward", "Reading", "Outward", "Show the focus router's source tree", "O", "reading"),
+    Entry("inward", "Reading", "Inward", "Show how everyone reaches the focus router", "I",
+          "reading"),
     Entry("effect", "Reading", "Effect", "Show what the trial changes for the focus router", "E",
           "reading"),
     Entry("keys", "Help", "Keys", "Show every key", "F1"),
@@ -115,7 +117,7 @@ def keys_text() -> str:
     ]
     sheet = (
         ("Click", "ask about a router, a segment or a link"),
-        ("Shift+click", "add to the selection"),
+        ("Shift+click", "add to the selection; a second router asks for the path to it"),
         ("Drag", "move, or on empty paper select an area"),
         ("Double-click", "rename, change a cost, or draw a router"),
         ("Wheel, + and -", "zoom"),

@@ -17,7 +17,8 @@ from netsketch.window.relay import Relay
 
 if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
-    from netsketch.session.answers import Answers, Outward, Path
+    from netsketch.analysis.tipping import Tipping
+    from netsketch.session.answers import Answers, Inward, Outward, Pair
 
 Focus = tuple[str, str]
 """("router" | "segment" | "link", id)."""
@@ -30,7 +31,8 @@ class Desk(QObject):
     plan_changed = Signal()
     focus_changed = Signal()
     answered = Signal()
-    """:attr:`reading`, :attr:`outward` or :attr:`path` is new."""
+    """:attr:`reading` and what belongs to it is new."""
+    tipping_changed = Signal()
     ledger_changed = Signal()
     refused = Signal(str)
     state_changed = Signal(str)
@@ -44,10 +46,13 @@ class Desk(QObject):
         self.answers: Answers | None = None
         self.focus: Focus | None = None
         self.pair: tuple[str, str] | None = None
-        self.wants_effect = False
+        self.shows_change = False
+        self.kind = "outward"
         self.reading: Reading | None = None
         self.outward: Outward | None = None
-        self.path: Path | None = None
+        self.inward: Inward | None = None
+        self.pair_answer: Pair | None = None
+        self.tipping: tuple[Tipping, Tipping] | None = None
         self.ledger: Ledger | None = None
         self.is_computing = False
         self._compared: tuple[object, object] = (None, None)
@@ -123,8 +128,8 @@ class Desk(QObject):
                 self.focus_changed.emit()
         if self.pair is not None and any(end not in plan.nodes for end in self.pair):
             self.pair = None
-        if not plan.trial:
-            self.wants_effect = False
+        if not plan.trial and self.kind == "effect":
+            self.kind = "outward"
         self.plan_changed.emit()
         if not all(_is_move(step) for step in changes.steps):
             self._answer()
@@ -138,29 +143,58 @@ class Desk(QObject):
         self.focus_changed.emit()
         self._answer()
 
-    def set_pair(self, source: str, target: str) -> None:
-        """Ask about the way from one router to another router or segment."""
-        self.focus, self.pair = ("router", source), (source, target)
+    def set_pair(self, source: str, target: str, *, changed: bool = False) -> None:
+        """Ask about the way from one router to another router or segment; ``changed``
+        shows the old and the new way rather than the way and the way back."""
+        self.focus, self.pair, self.shows_change = ("router", source), (source, target), changed
         self.focus_changed.emit()
         self._answer()
 
-    def show_effect(self, wanted: bool) -> None:
-        """Show the trial against the plan for the focus router, or its plain source tree."""
-        self.wants_effect, self.pair = wanted, None
+    def show_kind(self, kind: str) -> None:
+        """Show the focus router's source tree ("outward"), its sink tree ("inward") or what
+        the trial does to it ("effect")."""
+        self.kind, self.pair = kind, None
         self._answer()
 
     def _answer(self) -> None:
-        self.reading = self.outward = self.path = None
-        if self.answers is not None and self.focus is not None and self.focus[0] == "router":
-            router = self.focus[1]
-            self.outward = self.answers.outward(router)
-            self.reading = self.outward.reading
-            if self.pair is not None:
-                self.path = self.answers.path(*self.pair)
-                self.reading = self.path.reading
-            elif self.wants_effect:
-                self.reading = self.answers.effect(router)
+        self.reading = self.outward = self.inward = self.pair_answer = None
+        if self.answers is not None and self.focus is not None:
+            kind, key = self.focus
+            if kind == "link":
+                self._ask_tipping(key)
+            elif kind == "router":
+                self._answer_router(self.answers, key)
+            elif self.kind == "inward":
+                self.reading = self.answers.inward(key).reading
         self.answered.emit()
+
+    def _answer_router(self, answers: Answers, router: str) -> None:
+        if self.pair is not None:
+            self.pair_answer = answers.pair(*self.pair)
+            changed = self.shows_change and bool(self.document.plan.trial)
+            self.reading = (
+                answers.changed_path(*self.pair) if changed else answers.path(*self.pair).reading
+            )
+        elif self.kind == "inward":
+            self.inward = answers.inward(router)
+            self.reading = self.inward.reading
+        else:
+            self.outward = answers.outward(router)
+            self.reading = self.outward.reading
+            if self.kind == "effect":
+                self.reading = answers.effect(router)
+
+    def _ask_tipping(self, link: str) -> None:
+        assert self.answers is not None
+        self.tipping = None
+        self._relay.submit("tipping", self.answers.tipping_task(link), self._tipping_came)
+
+    def _tipping_came(self, result: Any) -> None:
+        if isinstance(result, Exception):
+            self.refused.emit(f"The pairs of the link could not be computed: {result}")
+            return
+        self.tipping = result
+        self.tipping_changed.emit()
 
     # -- the ledger -----------------------------------------------------------------------
 

@@ -113,7 +113,7 @@ class MainWindow(QMainWindow):
         for group in (
             ("tool_select", "tool_router", "tool_segment", "tool_link"),
             ("toggle_down", "toggle_drained", "try_cost"),
-            ("outward", "effect"),
+            ("outward", "inward", "effect"),
             ("undo", "redo"),
             ("fit", "ledger"),
         ):
@@ -134,7 +134,8 @@ class MainWindow(QMainWindow):
         self.inspector.focus_asked.connect(self.go_to)
         self.inspector.path_lit.connect(sheet.light_path)
         self.inspector.path_asked.connect(desk.set_pair)
-        self.ledger.pair_asked.connect(desk.set_pair)
+        self.ledger.pair_asked.connect(partial(desk.set_pair, changed=True))
+        desk.tipping_changed.connect(self._show_tipping)
         self.strip.ledger_asked.connect(self.toggle_ledger)
         desk.document_changed.connect(self._show_document)
         desk.plan_changed.connect(self._show_plan)
@@ -183,6 +184,9 @@ class MainWindow(QMainWindow):
 
     def _show_selection(self) -> None:
         chosen = self.sheet.selected_nodes, self.sheet.selected_links
+        if self._is_pair(*chosen):
+            self.desk.set_pair(*chosen[0])
+            return
         self.inspector.show_focus(self.desk.focus, chosen)
         several = len(chosen[0]) + len(chosen[1])
         for key in ("delete", "toggle_down"):
@@ -196,9 +200,26 @@ class MainWindow(QMainWindow):
         desk = self.desk
         self.inspector.set_document(desk.document, desk.answers)
         self.sheet.set_reading(desk.reading)
-        self.inspector.show_outward(desk.outward)
-        shown = "effect" if desk.wants_effect else "outward"
-        self.actions_by_id[shown].setChecked(True)
+        self.inspector.show_pair(desk.pair_answer)
+        self.inspector.show_tipping(None)
+        if desk.inward is not None:
+            self.inspector.show_inward(desk.inward)
+        else:
+            self.inspector.show_outward(desk.outward)
+        self.actions_by_id[desk.kind].setChecked(True)
+
+    def _show_tipping(self) -> None:
+        self.inspector.show_tipping(self.desk.tipping)
+
+    def _is_pair(self, nodes: list[str], links: list[str]) -> bool:
+        """Tell whether the selection asks for a pair anew: the focus router, and one more
+        node clicked with Shift or Ctrl."""
+        return (
+            len(nodes) == 2
+            and not links
+            and self.desk.focus == ("router", nodes[0])
+            and self.desk.pair != (nodes[0], nodes[1])
+        )
 
     def _show_ledger(self) -> None:
         desk = self.desk

@@ -14,7 +14,7 @@ from netsketch.reports.words import delay_text, next_hops_text, outcome_text
 
 if TYPE_CHECKING:
     from netsketch.analysis.table import RouteRow
-    from netsketch.session.answers import Outward
+    from netsketch.session.answers import Inward, Outward
 
 HEADERS = ("Destination", "Change", "", "Next hop", "Cost", "Hops", "Delay, ms")
 CHANGE = 1
@@ -90,6 +90,8 @@ class RouteTable(QAbstractTableModel):
         super().__init__(parent)
         self._outward: Outward | None = None
         self._plan = Plan()
+        self.inwards = False
+        """Whether the rows are ways to the router rather than from it."""
         self._lines: list[Line] = []
         self._shown: list[Line] = []
         self._filter = ""
@@ -98,7 +100,7 @@ class RouteTable(QAbstractTableModel):
     def show(self, outward: Outward | None, plan: Plan) -> None:
         """Show another router's routes, or none."""
         self.beginResetModel()
-        self._outward, self._plan = outward, plan
+        self._outward, self._plan, self.inwards = outward, plan, False
         self._lines = []
         if outward is not None:
             self._lines = [
@@ -108,9 +110,19 @@ class RouteTable(QAbstractTableModel):
         self._choose()
         self.endResetModel()
 
+    def show_ways(self, inward: Inward, plan: Plan) -> None:
+        """Show every router's way to one of them."""
+        self.beginResetModel()
+        self._outward, self._plan, self.inwards = None, plan, True
+        self._lines = [Line(row, plan.nodes[row.to].label, None, self) for row in inward.rows]
+        self._choose()
+        self.endResetModel()
+        self.headerDataChanged.emit(_HORIZONTAL, 0, 0)
+
     def letters(self, destination: str) -> str:
         """Return the letters of the first hops to a destination, as on the sheet."""
-        assert self._outward is not None
+        if self._outward is None:
+            return ""
         reading = self._outward.reading
         return " ".join(reading.first_hops[i].letter for i in reading.plates[destination].letters)
 
@@ -185,7 +197,7 @@ class RouteTable(QAbstractTableModel):
     def headerData(self, section: int, orientation: Qt.Orientation, role: int = _DISPLAY) -> Any:
         if orientation == _HORIZONTAL:
             if role == _DISPLAY:
-                return HEADERS[section]
+                return "From" if self.inwards and section == 0 else HEADERS[section]
             if role == _TOOL_TIP:
                 return TIPS[section]
         return None

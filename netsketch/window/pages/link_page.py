@@ -3,12 +3,17 @@
 from __future__ import annotations
 
 from functools import partial
+from typing import TYPE_CHECKING
 
 from PySide6.QtWidgets import QCheckBox, QGridLayout, QHBoxLayout, QLineEdit, QPushButton
 
 from netsketch.model import Link, PlanError, Segment, edits
 from netsketch.model.checks import check_cost, quoted
 from netsketch.window.pages.page import Page, button, form, label, line, short
+from netsketch.window.pages.usage import Usage
+
+if TYPE_CHECKING:
+    from netsketch.analysis.tipping import Tipping
 
 
 class LinkPage(Page):
@@ -27,6 +32,7 @@ class LinkPage(Page):
         self.capacity = line("Capacity in Mbit/s", "Empty where it is not known")
         self.delay = line("Delay in ms", "Empty where it is not known")
         self.groups = line("Shared-risk groups", "Ids of the groups, separated by commas")
+        self.usage = Usage()
         self._lay_out()
         self._connect()
 
@@ -51,7 +57,7 @@ class LinkPage(Page):
         fields.addRow("Delay, ms", self.delay)
         fields.addRow("Shared risk", self.groups)
         self.column.addLayout(fields)
-        self.column.addStretch(1)
+        self.column.addWidget(self.usage, 1)
 
     def _connect(self) -> None:
         for index, end in enumerate(self.ends):
@@ -61,6 +67,7 @@ class LinkPage(Page):
         self.try_button.clicked.connect(self._try)
         self.set_button.clicked.connect(self._set)
         self.down.clicked.connect(self._toggle_down)
+        self.usage.cost_picked.connect(self._try_one)
         for field, change in (
             (self.capacity, self._change_capacity),
             (self.delay, self._change_delay),
@@ -96,6 +103,18 @@ class LinkPage(Page):
         self.capacity.setText(_text(link.capacity_mbps))
         self.delay.setText(_text(link.delay_ms))
         self.groups.setText(", ".join(link.groups))
+
+    def show_tipping(self, tipping: tuple[Tipping, Tipping] | None) -> None:
+        """Show which pairs use the link; ``None`` while that is computed."""
+        if tipping is None:
+            self.usage.show_waiting(self.plan, self._link)
+        else:
+            self.usage.show_tipping(tipping)
+
+    def _try_one(self, back: bool, cost: int) -> None:
+        now = edits.costs_in_trial(self.plan, self._link)
+        costs = (now[0], cost) if back else (cost, now[1])
+        self.propose(edits.try_costs(self.plan, self._link, *costs))
 
     def _read_costs(self) -> tuple[int, int]:
         found = []

@@ -22,7 +22,7 @@ from netsketch.window.pages.page import Page, button, form, label, line, short
 from netsketch.window.route_table import CHANGE, CSV_HEADER, RouteTable
 
 if TYPE_CHECKING:
-    from netsketch.session.answers import Outward
+    from netsketch.session.answers import Inward, Outward
 
 _WIDTHS = (110, 78, 30, 140, 48, 44, 74)
 
@@ -50,6 +50,7 @@ class RouterPage(Page):
         self.filter.setClearButtonEnabled(True)
         self.copy = button("Copy as CSV", "Copy the rows shown to the clipboard")
         self.show_path = button("Show as path", "Show the chosen row as a path, with the way back")
+        self.heading = label("Forwarding table", "heading")
         self.count = QLabel()
         self.count.setProperty("role", "soft")
         self._lay_out()
@@ -66,7 +67,7 @@ class RouterPage(Page):
         fields.addRow("In the trial", states)
         self.column.addLayout(fields)
         head = QHBoxLayout()
-        head.addWidget(label("Forwarding table", "heading"))
+        head.addWidget(self.heading)
         head.addStretch(1)
         head.addWidget(self.count)
         self.column.addLayout(head)
@@ -113,6 +114,7 @@ class RouterPage(Page):
     def show_outward(self, outward: Outward | None) -> None:
         """Show the forwarding table; ``None`` while the routing core is being loaded."""
         chosen = self._chosen()
+        self.heading.setText("Forwarding table")
         self.table_model.show(outward, self.plan)
         changed = outward is not None and bool(outward.changed)
         self.table.setColumnHidden(CHANGE, not changed)
@@ -120,6 +122,13 @@ class RouterPage(Page):
         row = self.table_model.row_of(chosen) if chosen else None
         if row is not None:
             self.table.selectRow(row)
+
+    def show_inward(self, inward: Inward) -> None:
+        """Show every router's way to this one."""
+        self.heading.setText("How everyone reaches it")
+        self.table_model.show_ways(inward, self.plan)
+        self.table.setColumnHidden(CHANGE, True)
+        self._show_count()
 
     def _show_count(self, waiting: bool = False) -> None:
         shown, of = self.table_model.counts()
@@ -134,28 +143,31 @@ class RouterPage(Page):
         row = self.table.currentIndex().row()
         if row < 0 or self.answers is None:
             return
-        target = self.table_model.line(row).row.to
-        self.path_lit.emit(self.directions_to(target))
+        other = self.table_model.line(row).row.to
+        ends = (other, self._router) if self.table_model.inwards else (self._router, other)
+        self.path_lit.emit(self.directions(*ends))
 
     def _unlight(self) -> None:
         if not self.table.selectionModel().hasSelection():
             self.path_lit.emit(None)
 
-    def directions_to(self, target: str) -> Mapping[str, int]:
-        """Return the links on the way to ``target`` with the direction of travel."""
+    def directions(self, source: str, target: str) -> Mapping[str, int]:
+        """Return the links on the way between two routers with the direction of travel."""
         assert self.answers is not None
         plan = self.plan
         return {
             share.link: 1 if plan.links[share.link].source == share.tail else -1
-            for share in self.answers.path(self._router, target).links
+            for share in self.answers.path(source, target).links
         }
 
     def _ask_path(self) -> None:
-        target = self._chosen()
-        if target is None:
+        other = self._chosen()
+        if other is None:
             self.hint.emit("Choose a row of the table first")
+        elif self.table_model.inwards:
+            self.path_asked.emit(other, self._router)
         else:
-            self.path_asked.emit(self._router, target)
+            self.path_asked.emit(self._router, other)
 
     def _rename(self) -> None:
         if self._router in self.plan.nodes:
