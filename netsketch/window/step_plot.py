@@ -11,6 +11,8 @@ from PySide6.QtGui import QColor, QKeyEvent, QMouseEvent, QPainter, QPaintEvent,
 from PySide6.QtWidgets import QWidget
 
 _LEFT, _RIGHT, _TOP, _BOTTOM = 46, 12, 10, 34
+_SHORT = ("1", "10", "100", "1k", "10k", "100k", "1M", "10M")
+"""Powers of ten, short enough to stand side by side."""
 
 
 class StepPlot(QWidget):
@@ -109,11 +111,11 @@ class StepPlot(QWidget):
         for count in {0, top}:
             place = QRectF(0, self._y(count) - 9, _LEFT - 6, 18)
             painter.drawText(place, int(Qt.AlignmentFlag.AlignRight), f"{count:,}")
-        cost = 1
-        while cost <= self._highest:
-            place = QRectF(self._x(cost) - 40, area.bottom() + 2, 80, 16)
-            painter.drawText(place, int(Qt.AlignmentFlag.AlignHCenter), f"{cost:,}")
-            cost *= 10
+        power = 0
+        while 10**power <= self._highest:
+            place = QRectF(self._x(10**power) - 40, area.bottom() + 2, 80, 16)
+            painter.drawText(place, int(Qt.AlignmentFlag.AlignHCenter), _SHORT[power])
+            power += 1
         words = QRectF(area.left(), area.bottom() + 17, area.width(), 16)
         painter.drawText(words, int(Qt.AlignmentFlag.AlignHCenter), "cost; dashed: as it is now")
 

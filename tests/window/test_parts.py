@@ -93,7 +93,7 @@ def test_a_ledger_row_asks_for_the_pair(harbour: Person, qtbot: QtBot) -> None:
     target = panel.table.visualRect(panel.model.index(0, 0)).center()
     qtbot.mouseClick(panel.table.viewport(), LEFT, pos=target)
     assert harbour.window.desk.pair == panel.model.pair(0)
-    assert harbour.window.sheet.drawing.reading.kind == "path"
+    assert harbour.window.sheet.drawing.reading.focus == panel.model.pair(0)
 
 
 def test_the_ledger_is_copied_and_saved_as_csv(
@@ -251,11 +251,11 @@ def test_looks_switch_and_are_remembered(person: Person) -> None:
 
 
 def test_several_things_have_a_page(harbour: Person) -> None:
-    harbour.click(harbour.at(find(harbour, "Hub-W")))
-    harbour.click(harbour.at(find(harbour, "Hub-E")), Qt.KeyboardModifier.ShiftModifier)
+    for name in ("Hub-W", "Hub-E", "Gate-N"):
+        harbour.click(harbour.at(find(harbour, name)), Qt.KeyboardModifier.ShiftModifier)
     page = harbour.window.inspector.several_page
     assert harbour.window.inspector.currentWidget() is page
-    assert page.counts.text() == "2 routers selected"
+    assert page.counts.text() == "3 routers selected"
 
 
 def test_the_picture_of_the_sheet(harbour: Person, tmp_path: Path) -> None:

@@ -10,6 +10,7 @@ from PySide6.QtGui import QGuiApplication, QKeySequence, QShortcut
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QCheckBox,
+    QCompleter,
     QHBoxLayout,
     QHeaderView,
     QLabel,
@@ -50,6 +51,8 @@ class RouterPage(Page):
         self.filter.setClearButtonEnabled(True)
         self.copy = button("Copy as CSV", "Copy the rows shown to the clipboard")
         self.show_path = button("Show as path", "Show the chosen row as a path, with the way back")
+        self.path_to = line("Path to", "Write a name and press Return to see the way there")
+        self.path_to.setPlaceholderText("Path to…")
         self.heading = label("Forwarding table", "heading")
         self.count = QLabel()
         self.count.setProperty("role", "soft")
@@ -74,8 +77,8 @@ class RouterPage(Page):
         self.column.addWidget(self.filter)
         self.column.addWidget(self.table, 1)
         foot = QHBoxLayout()
+        foot.addWidget(self.path_to, 1)
         foot.addWidget(self.show_path)
-        foot.addStretch(1)
         foot.addWidget(self.copy)
         self.column.addLayout(foot)
 
@@ -86,6 +89,7 @@ class RouterPage(Page):
         self.drained.clicked.connect(self._toggle_drained)
         self.filter.textChanged.connect(self._refilter)
         self.copy.clicked.connect(self._copy)
+        self.path_to.returnPressed.connect(self._find)
         self.show_path.clicked.connect(self._ask_path)
         self.table.doubleClicked.connect(self._ask_path)
         self.table.selectionModel().currentRowChanged.connect(self._light)
@@ -108,6 +112,11 @@ class RouterPage(Page):
         self.title.setText(short(router.label))
         self.name.setText(router.name)
         self.site.setText(router.site)
+        names = [node.label[:80] for node in self.plan.nodes if node.id != key]
+        completer = QCompleter(names, self.path_to)
+        completer.setCaseSensitivity(Qt.CaseSensitivity.CaseInsensitive)
+        completer.setFilterMode(Qt.MatchFlag.MatchContains)
+        self.path_to.setCompleter(completer)
         self.down.setChecked(not edits.is_up(self.plan, node=key))
         self.drained.setChecked(edits.is_drained(self.plan, key))
 
@@ -168,6 +177,24 @@ class RouterPage(Page):
             self.path_asked.emit(other, self._router)
         else:
             self.path_asked.emit(self._router, other)
+
+    def _find(self) -> None:
+        """Ask for the path to the node that was named: in full, or by the only beginning."""
+        text = self.path_to.text().strip().casefold()
+        named = {
+            node.id: (node.label.casefold(), node.id.casefold())
+            for node in self.plan.nodes
+            if node.id != self._router
+        }
+        exact = [key for key, names in named.items() if text in names]
+        found = exact or [
+            key for key, names in named.items() if any(name.startswith(text) for name in names)
+        ]
+        if len(found) == 1:
+            self.path_asked.emit(self._router, found[0])
+        else:
+            several = f"{len(found)} names begin so; write more of it" if found else "No such name"
+            self.hint.emit(several)
 
     def _rename(self) -> None:
         if self._router in self.plan.nodes:
