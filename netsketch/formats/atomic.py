@@ -6,6 +6,7 @@ import contextlib
 import os
 import secrets
 import stat
+from collections.abc import Iterable
 from pathlib import Path
 
 from netsketch.formats.errors import FormatError
@@ -18,12 +19,18 @@ def write_bytes(path: Path, data: bytes) -> None:
     name. Permissions of the old file stay; a symbolic link keeps pointing at its file.
     Raises :class:`FormatError`; the old file is then untouched.
     """
+    write_parts(path, (data,))
+
+
+def write_parts(path: Path, parts: Iterable[bytes]) -> None:
+    """Do what :func:`write_bytes` does with data too long to hold, made as it is written.
+    Whatever ``parts`` raises leaves the old file untouched as well."""
     try:
         target = path.resolve()
         mode = _mode_of(target)
         temporary = target.with_name(f".{target.name[:100]}.{secrets.token_hex(6)}.part")
         try:
-            _write_through(temporary, data, mode)
+            _write_through(temporary, parts, mode)
             temporary.replace(target)
         except BaseException:
             with contextlib.suppress(FileNotFoundError):
@@ -50,10 +57,10 @@ def _mode_of(target: Path) -> int | None:
     return stat.S_IMODE(found.st_mode)
 
 
-def _write_through(temporary: Path, data: bytes, mode: int | None) -> None:
+def _write_through(temporary: Path, parts: Iterable[bytes], mode: int | None) -> None:
     flags = os.O_WRONLY | os.O_CREAT | os.O_EXCL | getattr(os, "O_BINARY", 0)
     with os.fdopen(os.open(temporary, flags, 0o666), "wb") as file:
-        file.write(data)
+        file.writelines(parts)
         file.flush()
         os.fsync(file.fileno())
     if mode is not None:

@@ -1,0 +1,106 @@
+"""A record as one HTML file: no scripts, nothing fetched, every name escaped."""
+
+from __future__ import annotations
+
+import re
+from functools import cache
+
+from jinja2 import Environment, PackageLoader, StrictUndefined
+from markupsafe import Markup
+
+from netsketch.reports import cautions
+from netsketch.reports.record import Record
+from netsketch.reports.record_words import shown
+from netsketch.reports.text import NONE, number
+
+MOST = 12
+"""Rows of the tables that show only the worst."""
+
+PAGE_PICTURE = "picture:{}"
+"""Name under which a picture stands in the pages that are printed."""
+
+_ID = re.compile(r'( id="|url\(#)(?=(?:patternmask|fillpattern|gradient))')
+
+
+def html(record: Record) -> str:
+    """Return the record as a page for a browser, with its pictures in it."""
+    pictures = [
+        Markup(inline_svg(picture.svg, f"p{n}-")) for n, picture in enumerate(record.pictures)
+    ]
+    return _rendered(record, "screen.css", pictures)
+
+
+def print_html(record: Record) -> str:
+    """Return the record in the HTML that Qt lays out on pages; its pictures are images
+    called :data:`PAGE_PICTURE`."""
+    names = (PAGE_PICTURE.format(n) for n in range(len(record.pictures)))
+    return _rendered(record, "page.css", [Markup('<img src="{}">').format(n) for n in names])
+
+
+def inline_svg(svg: str, prefix: str) -> str:
+    """Return a picture as an element of HTML: without the XML declaration, its ids told
+    apart from those of other pictures by ``prefix``."""
+    return _ID.sub(rf"\1{prefix}", svg[svg.index("<svg") :])
+
+
+def _rendered(record: Record, style: str, pictures: list[Markup]) -> str:
+    return (
+        _environment()
+        .get_template("record.html")
+        .render(
+            record=record,
+            style=style,
+            pictures=pictures,
+            file=shown(record.origin.file) or "not saved to a file",
+            fresh=sum(point.is_new for point in record.single_points),
+            most=MOST,
+            computes=cautions.COMPUTES,
+            does_not=cautions.DOES_NOT,
+            cautions=cautions.CAUTIONS,
+        )
+    )
+
+
+@cache
+def _environment() -> Environment:
+    environment = Environment(
+        loader=PackageLoader("netsketch.reports"),
+        autoescape=True,
+        trim_blocks=True,
+        lstrip_blocks=True,
+        undefined=StrictUndefined,
+    )
+    environment.filters.update(
+        count=count, cost=cost, signed=signed, rate=rate, percent=percent, more=more
+    )
+    return environment
+
+
+def count(value: int) -> str:
+    """Return "1,234"."""
+    return f"{value:,}"
+
+
+def cost(value: int | None) -> str:
+    """Return a cost, or a dash where there is no path."""
+    return NONE if value is None else f"{value:,}"
+
+
+def signed(value: int | None) -> str:
+    """Return "+12", "0" or "−3"; a dash where there is nothing to compare."""
+    return NONE if value is None else f"{value:+,}".replace("-", "−") if value else "0"
+
+
+def rate(mbps: float) -> str:
+    """Return Mbit/s to a hundredth: "1,234.5"."""
+    return f"{mbps:,.2f}".rstrip("0").rstrip(".")
+
+
+def percent(part: float | None) -> str:
+    """Return "87.5 %"; a dash where the capacity is not known."""
+    return NONE if part is None else f"{number(round(part * 100, 1))} %"
+
+
+def more(rows: tuple[object, ...], most: int, what: str) -> str:
+    """Return how many rows a table leaves out, as the sentence before its note."""
+    return f"{len(rows) - most:,} more {what} are not listed. " if len(rows) > most else ""
