@@ -91,9 +91,7 @@ def test_down(trial_of: Callable[..., object], word: str, changes: object) -> No
         (("--cost", "a=b=5/7"), "--cost: link “a=b”: leaving segment “s1” costs 0, not 7"),
     ],
 )
-def test_what_is_refused(
-    trial_of: Callable[..., str], words: tuple[str, ...], reason: str
-) -> None:
+def test_what_is_refused(trial_of: Callable[..., str], words: tuple[str, ...], reason: str) -> None:
     assert reason in trial_of(*words)
 
 

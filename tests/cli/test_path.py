@@ -60,9 +60,7 @@ def test_text_and_csv(run: Run, saved: Callable[[Plan], Path]) -> None:
 
 
 @pytest.mark.parametrize("target", ["a", "s", "nowhere"])
-def test_the_ends_are_two_routers(
-    run: Run, saved: Callable[[Plan], Path], target: str
-) -> None:
+def test_the_ends_are_two_routers(run: Run, saved: Callable[[Plan], Path], target: str) -> None:
     file = saved(plan_of("a-b 5, b-s 5", "s"))
     line = run("path", file, "--from", "a", "--to", target).refusal
     assert str(file) in line

@@ -29,9 +29,7 @@ def test_json_shape(run: Run, saved: Callable[[Plan], Path]) -> None:
     }
 
 
-def test_cut_off_pairs_leave_out_the_failed_router(
-    run: Run, saved: Callable[[Plan], Path]
-) -> None:
+def test_cut_off_pairs_leave_out_the_failed_router(run: Run, saved: Callable[[Plan], Path]) -> None:
     file = saved(plan_of("a-b 5, b-c 5"))
     answer = run("trial", file, "--down", "b", "--as", "json").json
     assert (answer["moved"], answer["cut_off"]) == (0, 2)
@@ -46,9 +44,7 @@ def test_without_changes_nothing_changes(run: Run, saved: Callable[[Plan], Path]
     assert run("trial", file).out == "0 moved, 0 cut off, 0 restored\n"
 
 
-def test_a_stored_trial_counts_only_when_asked_for(
-    run: Run, saved: Callable[[Plan], Path]
-) -> None:
+def test_a_stored_trial_counts_only_when_asked_for(run: Run, saved: Callable[[Plan], Path]) -> None:
     plan = plan_of(SQUARE)
     plan.apply(edits.try_changes(plan, [LinkState("b-d")], "try"))
     file = saved(plan)
