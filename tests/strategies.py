@@ -19,6 +19,7 @@ from netsketch.model import (
     Drained,
     Edit,
     Item,
+    KeptTrial,
     Link,
     LinkCost,
     LinkState,
@@ -33,6 +34,7 @@ from netsketch.model import (
     edits,
 )
 from netsketch.model.edits import replace
+from netsketch.model.trial import subject
 
 LETTERS = string.ascii_letters + string.digits + " -_.:/"
 ODD_LETTERS = LETTERS + "\"'\\&<>[](){}#,;\n\täßéλ東🛰"
@@ -154,6 +156,9 @@ def plans(
         _put(plan, [draw(links(key, nodes, groups, settings.cost_style)) for key in link_ids])
         _put(plan, draw(_demands(plan)))
     if with_trial:
+        for name in draw(st.lists(st.sampled_from(["A", "B"]), unique=True)) if nodes else []:
+            kept = draw(st.lists(trial_changes(plan), max_size=2, unique_by=subject))
+            plan.apply(edits.add(plan, KeptTrial(name=name, changes=tuple(kept))))
         changes = draw(st.lists(trial_changes(plan), max_size=3)) if nodes else []
         plan.apply(edits.try_changes(plan, changes, "try"))
     return plan
@@ -208,7 +213,9 @@ def edits_on(draw: st.DrawFn, plan: Plan) -> Edit:
     if len(plan.links):
         makers += [_set_costs, _set_costs, _regroup, _switch_link]
     if plan.trial:
-        makers += [edits_adopt, edits_discard]
+        makers += [edits_adopt, edits_discard, _keep_trial]
+    if len(plan.trials):
+        makers += [_lay_kept, _forget_trial]
     return draw(st.sampled_from(makers))(draw, plan)
 
 
@@ -277,6 +284,18 @@ def _regroup(draw: st.DrawFn, plan: Plan) -> Edit:
 def _switch_link(draw: st.DrawFn, plan: Plan) -> Edit:
     old = plan.links[draw(st.sampled_from(plan.links.keys()))]
     return Edit("switch a link", (Change(old, replace(old, up=not old.up)),))
+
+
+def _keep_trial(draw: st.DrawFn, plan: Plan) -> Edit:
+    return edits.keep_trial(plan, draw(st.sampled_from(["A", "B", "odd “name”"])))
+
+
+def _lay_kept(draw: st.DrawFn, plan: Plan) -> Edit:
+    return edits.lay_kept(plan, draw(st.sampled_from(plan.trials.keys())))
+
+
+def _forget_trial(draw: st.DrawFn, plan: Plan) -> Edit:
+    return edits.forget_trial(plan, draw(st.sampled_from(plan.trials.keys())))
 
 
 def edits_adopt(draw: st.DrawFn, plan: Plan) -> Edit:

@@ -22,7 +22,7 @@ UNCHANGED = derive.UNCHANGED
 SOURCES_AT_ONCE = 512
 
 Columns = tuple[npt.NDArray[Any], ...]
-"""Sources, targets, outcomes, costs before, costs after."""
+"""Sources, targets, outcomes, costs before and after, delays before and after."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -42,7 +42,9 @@ class Ledger:
     """Trial against plan over all pairs, as columns of equal length.
 
     ``sources`` and ``targets`` are indexes into ``routers``; ``outcomes`` holds the codes
-    of :data:`OUTCOMES`; ``before`` and ``after`` are costs, -1 where there is no path.
+    of :data:`OUTCOMES`; ``before`` and ``after`` are costs, -1 where there is no path;
+    ``delay_before`` and ``delay_after`` the most delay in ms over equal-cost paths, NaN
+    where it is not known.
     Next hops are derived when a row is asked for.
     """
 
@@ -52,6 +54,7 @@ class Ledger:
         self.sources, self.targets = (_joined(parts, k, np.int32) for k in (0, 1))
         self.outcomes = _joined(parts, 2, np.int8)
         self.before, self.after = (_joined(parts, k, np.int64) for k in (3, 4))
+        self.delay_before, self.delay_after = (_joined(parts, k, np.float64) for k in (5, 6))
         self.moved = int((self.outcomes == derive.MOVED).sum())
         self.cut_off = int((self.outcomes == derive.CUT_OFF).sum())
         self.restored = int((self.outcomes == derive.RESTORED).sum())
@@ -165,7 +168,11 @@ def _collect(
         row, target = np.nonzero(outcomes != UNCHANGED)
         if row.size:
             was, now = _costs(before, row, target), _costs(after, row, target)
-            parts.append((sources[row], target, outcomes[row, target], was, now))
+            delays = (
+                _delays(network, sources, rows, row, target)
+                for network, rows in ((old, before), (new, after))
+            )
+            parts.append((sources[row], target, outcomes[row, target], was, now, *delays))
     return Ledger(old, new, parts)
 
 
@@ -175,6 +182,33 @@ def _costs(
     costs = rows[row, target].astype(np.int64)
     costs[costs == unreached(rows.dtype.type)] = -1
     return costs
+
+
+def _delays(
+    network: Network,
+    sources: npt.NDArray[np.int32],
+    rows: Distances,
+    row: npt.NDArray[np.intp],
+    target: npt.NDArray[np.intp],
+) -> npt.NDArray[np.float64]:
+    """Return the most delay of the pairs (``row``, ``target``); only sources that have
+    such a pair are looked at."""
+    if np.isnan(network.delay).all():
+        return np.full(len(row), np.nan)
+    s = network.structure
+    needed, place = np.unique(row, return_inverse=True)
+    worst = np.empty((len(needed), s.vertices))
+
+    def work(first: int, last: int) -> None:
+        part = needed[first:last]
+        derive.worst_delays(
+            s.indptr, s.head, s.link, s.routers, network.weight, network.transit, network.delay,
+            unreached(rows.dtype.type), sources[part], rows[part], worst[first:last],
+        )  # fmt: skip
+
+    over_sources(len(needed), work, chunk=64)
+    found: npt.NDArray[np.float64] = worst[place, target]
+    return found
 
 
 def changed_arcs(old: Network, new: Network) -> npt.NDArray[np.int32]:

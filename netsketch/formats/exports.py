@@ -31,7 +31,11 @@ def _graph(plan: Plan) -> Attributes:
     graph = records.settings_object(plan.settings)
     whole = objects.from_plan(plan)["graph"]
     graph.update(
-        {key: _json(whole[key]) for key in ("groups", "demands", "trial") if whole.get(key)}
+        {
+            key: _json(whole[key])
+            for key in ("groups", "demands", "trial", "trials")
+            if whole.get(key)
+        }
     )
     for key in ("extra", "top_extra"):
         if value := getattr(plan.settings, key):

@@ -98,7 +98,7 @@ class _Import:
         if (reference := number(found.get("reference_mbps"))) is not None:
             graph["reference_mbps"] = reference
             self.reference = reference if is_number(reference) else self.reference
-        for key in ("groups", "demands", "trial"):
+        for key in ("groups", "demands", "trial", "trials"):
             value = found.get(key)
             if (listed := from_json(value, list)) is not None:
                 graph[key] = listed

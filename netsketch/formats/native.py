@@ -21,7 +21,7 @@ HEAD: Final[dict[str, Any]] = {
     "directed": False,
     "multigraph": True,
 }
-LISTS: Final = ("groups", "demands", "trial")
+LISTS: Final = ("groups", "demands", "trial", "trials")
 
 _text = json.JSONEncoder(ensure_ascii=False, allow_nan=False).encode
 

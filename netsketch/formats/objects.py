@@ -9,13 +9,21 @@ import msgspec
 
 from netsketch.formats import limits, records
 from netsketch.formats.errors import FormatError
-from netsketch.formats.records import DemandRecord, EdgeRecord, GroupRecord, Place, with_extra
+from netsketch.formats.records import (
+    DemandRecord,
+    EdgeRecord,
+    GroupRecord,
+    KeptTrialRecord,
+    Place,
+    with_extra,
+)
 from netsketch.model import (
     Add,
     ChangeTrial,
     Demand,
     Edit,
     Item,
+    KeptTrial,
     Link,
     Node,
     Plan,
@@ -30,7 +38,7 @@ from netsketch.model import (
 )
 from netsketch.model.trial import subject
 
-GRAPH_KEYS: Final = (*records.SETTINGS_KEYS, "groups", "demands", "trial")
+GRAPH_KEYS: Final = (*records.SETTINGS_KEYS, "groups", "demands", "trial", "trials")
 
 
 class Places(msgspec.Struct, frozen=True):
@@ -82,6 +90,8 @@ def to_plan(
     ):
         filled.put(items, place, found)
     filled.lay_trial(_trial(lists["trial"], file, places))
+    kept = _section(graph, "trials", list, file)
+    filled.put(_kept_trials(kept, file), _kept_place, kept)
     return filled.plan, notes + _notes_on_trial(filled.plan.trial, lists["trial"])
 
 
@@ -202,6 +212,16 @@ def _trial(raw: list[Any], file: str, places: Places) -> Trial:
     return Trial(tuple(changes))
 
 
+def _kept_trials(raw: list[Any], file: str) -> list[KeptTrial]:
+    found = [records.set_aside(trial, records.KEPT_TRIAL_KEYS) for trial in raw]
+    kept = records.convert(found, list[KeptTrialRecord], "trials", file, _kept_place)
+    return [trial.value() for trial in kept]
+
+
+def _kept_place(index: int, raw: Any) -> str:
+    return f"trials[{index}]"
+
+
 def _notes_on_segments(nodes: Iterable[Node]) -> list[str]:
     drained = [
         f"segment {quoted(node.id)}"
@@ -233,6 +253,10 @@ def from_plan(plan: Plan) -> dict[str, Any]:
     graph["demands"] = [records.demand_object(demand) for demand in plan.demands]
     if plan.trial:
         graph["trial"] = [msgspec.to_builtins(change) for change in plan.trial]
+    if len(plan.trials):
+        graph["trials"] = [
+            with_extra(records.kept_trial_object(kept), kept.extra) for kept in plan.trials
+        ]
     found = {
         "graph": with_extra(graph, plan.settings.extra),
         "nodes": [with_extra(records.node_object(node), node.extra) for node in plan.nodes],

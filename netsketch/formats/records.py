@@ -9,7 +9,17 @@ from typing import Any, Final, TypeVar
 import msgspec
 
 from netsketch.formats.errors import FormatError
-from netsketch.model import Demand, Link, Router, Segment, Settings, SharedRiskGroup, quoted
+from netsketch.model import (
+    Demand,
+    KeptTrial,
+    Link,
+    Router,
+    Segment,
+    Settings,
+    SharedRiskGroup,
+    TrialChange,
+    quoted,
+)
 
 T = TypeVar("T")
 Place = Callable[[int, Any], str]
@@ -22,6 +32,7 @@ EDGE_KEYS: Final = (
 )  # fmt: skip
 GROUP_KEYS: Final = ("id", "name")
 DEMAND_KEYS: Final = ("from", "to", "mbps")
+KEPT_TRIAL_KEYS: Final = ("name", "changes")
 SETTINGS_KEYS: Final = ("name", "cost_style", "reference_mbps")
 
 
@@ -63,6 +74,18 @@ class GroupRecord(msgspec.Struct):
     def value(self) -> SharedRiskGroup:
         """Return the model's value."""
         return SharedRiskGroup(id=self.id, name=self.name, extra=self.extra)
+
+
+class KeptTrialRecord(msgspec.Struct):
+    """A trial put by under a name, as it is stored."""
+
+    name: str
+    changes: tuple[TrialChange, ...] = ()
+    extra: dict[str, Any] = {}
+
+    def value(self) -> KeptTrial:
+        """Return the model's value."""
+        return KeptTrial(name=self.name, changes=self.changes, extra=self.extra)
 
 
 def set_aside(raw: Any, known: tuple[str, ...]) -> Any:
@@ -192,6 +215,11 @@ def demand_object(demand: Demand) -> dict[str, Any]:
     """Return a demand."""
     found = {"from": demand.source, "to": demand.target, "mbps": demand.mbps}
     return with_extra(found, demand.extra)
+
+
+def kept_trial_object(kept: KeptTrial) -> dict[str, Any]:
+    """Return a trial put by under a name."""
+    return {"name": kept.name, "changes": [msgspec.to_builtins(c) for c in kept.changes]}
 
 
 def with_extra(found: dict[str, Any], extra: dict[str, Any]) -> dict[str, Any]:

@@ -10,7 +10,16 @@ import msgspec
 from netsketch.model.checks import PlanError, check_cost, quoted
 from netsketch.model.costs import highest_cost
 from netsketch.model.edit import Add, Change, ChangeSettings, ChangeTrial, Edit, Remove, Step
-from netsketch.model.items import Demand, Item, Link, Node, Router, Segment, SharedRiskGroup
+from netsketch.model.items import (
+    Demand,
+    Item,
+    KeptTrial,
+    Link,
+    Node,
+    Router,
+    Segment,
+    SharedRiskGroup,
+)
 from netsketch.model.plan import Plan
 from netsketch.model.trial import Drained, LinkCost, LinkState, NodeState, Trial, TrialChange
 
@@ -76,6 +85,10 @@ def remove(plan: Plan, nodes: Iterable[str] = (), links: Iterable[str] = ()) -> 
     trial = plan.trial.without_things(gone_nodes, gone_links)
     if trial != plan.trial:
         steps.append(ChangeTrial(plan.trial, trial))
+    for kept in plan.trials:
+        left = kept.trial.without_things(gone_nodes, gone_links)
+        if left != kept.trial:
+            steps.append(Change(kept, replace(kept, changes=left.changes)))
     for items in (
         demands,
         [plan.links[key] for key in gone_links],
@@ -275,6 +288,27 @@ def try_costs(plan: Plan, link: str, cost: int, cost_back: int) -> Edit:
 def drop_changes(plan: Plan, changes: Iterable[TrialChange]) -> Edit:
     """Return the edit that takes these changes out of the trial."""
     return Edit("drop a trial change", (ChangeTrial(plan.trial, plan.trial.without(*changes)),))
+
+
+def keep_trial(plan: Plan, name: str) -> Edit:
+    """Return the edit that puts the trial by under a name, in the place of another with
+    that name; the trial stays laid over the plan."""
+    kept = KeptTrial(name=name, changes=plan.trial.changes)
+    if name in plan.trials:
+        return change(plan, [kept], f"keep the trial as {name}")
+    return add(plan, kept, label=f"keep the trial as {name}")
+
+
+def lay_kept(plan: Plan, name: str) -> Edit:
+    """Return the edit that makes a kept trial the trial."""
+    trial = plan.trials[name].trial
+    steps = (ChangeTrial(plan.trial, trial),) if trial != plan.trial else ()
+    return Edit(f"lay the trial {name} over the plan", steps)
+
+
+def forget_trial(plan: Plan, name: str) -> Edit:
+    """Return the edit that drops a kept trial."""
+    return Edit(f"forget the trial {name}", tuple(_removals(plan, [plan.trials[name]])))
 
 
 def trial_items(plan: Plan, trial: Trial) -> list[Item]:

@@ -11,6 +11,7 @@ from typing import Any
 import msgspec
 
 from netsketch.model.costs import DEFAULT_STYLE
+from netsketch.model.trial import Trial, TrialChange
 
 Coordinate = int | float | None
 
@@ -125,7 +126,24 @@ class Demand(msgspec.Struct, frozen=True, kw_only=True, tag="demand", tag_field=
         return self.source, self.target
 
 
-Item = Router | Segment | Link | SharedRiskGroup | Demand
+class KeptTrial(msgspec.Struct, frozen=True, kw_only=True, tag="kept trial", tag_field="kind"):
+    """A trial put by under a name, in the plan's file."""
+
+    name: str
+    changes: tuple[TrialChange, ...] = ()
+    extra: dict[str, Any] = {}
+
+    @property
+    def key(self) -> str:
+        return self.name
+
+    @property
+    def trial(self) -> Trial:
+        """The trial itself."""
+        return Trial(self.changes)
+
+
+Item = Router | Segment | Link | SharedRiskGroup | Demand | KeptTrial
 
 
 class Settings(msgspec.Struct, frozen=True, kw_only=True):

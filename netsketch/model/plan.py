@@ -28,6 +28,7 @@ from netsketch.model.edit import (
 from netsketch.model.items import (
     Demand,
     Item,
+    KeptTrial,
     Link,
     Node,
     Router,
@@ -111,6 +112,7 @@ _KIND_NAMES: dict[type, str] = {
     Link: "link",
     SharedRiskGroup: "shared-risk group",
     Demand: "demand",
+    KeptTrial: "trial",
 }
 
 
@@ -128,6 +130,7 @@ class Plan:
         self.links: Shelf[Link] = Shelf()
         self.groups: Shelf[SharedRiskGroup] = Shelf()
         self.demands: Shelf[Demand] = Shelf()
+        self.trials: Shelf[KeptTrial] = Shelf()
         self.trial = Trial()
         self.revision = 0
         self._at: dict[str, dict[str, None]] = {}
@@ -140,7 +143,8 @@ class Plan:
     __hash__ = None  # type: ignore[assignment]
 
     def _saved(self) -> tuple[object, ...]:
-        return self.settings, self.nodes, self.links, self.groups, self.demands, self.trial
+        shelves = self.nodes, self.links, self.groups, self.demands, self.trials
+        return self.settings, *shelves, self.trial
 
     def routers(self) -> list[Router]:
         """Return the routers in order."""
@@ -173,6 +177,7 @@ class Plan:
         copy = Plan(self.settings)
         copy.nodes, copy.links = self.nodes.copy(), self.links.copy()
         copy.groups, copy.demands = self.groups.copy(), self.demands.copy()
+        copy.trials = self.trials.copy()
         copy.trial, copy.revision = self.trial, self.revision
         copy._at = {node: dict(links) for node, links in self._at.items()}
         copy._demands_at, copy._in_group = dict(self._demands_at), dict(self._in_group)
@@ -215,12 +220,14 @@ class Plan:
             return self.links
         if isinstance(item, SharedRiskGroup):
             return self.groups
+        if isinstance(item, KeptTrial):
+            return self.trials
         return self.demands if isinstance(item, Demand) else self.nodes
 
     def _name(self, item: Item) -> str:
         if isinstance(item, Demand):
             return f"demand from {quoted(item.source)} to {quoted(item.target)}"
-        return f"{_KIND_NAMES[type(item)]} {quoted(item.id)}"
+        return f"{_KIND_NAMES[type(item)]} {quoted(item.key)}"
 
     def _check(self, item: Item) -> None:
         if isinstance(item, Link):
@@ -238,6 +245,10 @@ class Plan:
         elif isinstance(item, SharedRiskGroup):
             if not item.id:
                 raise PlanError("a shared-risk group has an empty id")
+        elif isinstance(item, KeptTrial):
+            if not item.name:
+                raise PlanError("a trial that is kept needs a name")
+            self._check_trial(item.trial, self.settings.cost_style)
         else:
             check_node(item)
 
@@ -268,13 +279,18 @@ class Plan:
                 raise PlanError(f"{name} still has links")
             if self._demands_at.get(item.id):
                 raise PlanError(f"{name} still has demands")
-            if len(self.trial.without_things(nodes=[item.id]).changes) != len(self.trial.changes):
-                raise PlanError(f"{name} is changed by the trial")
+            self._check_untried(name, nodes=[item.id])
         elif isinstance(item, Link):
-            if len(self.trial.without_things(links=[item.id]).changes) != len(self.trial.changes):
-                raise PlanError(f"{name} is changed by the trial")
+            self._check_untried(name, links=[item.id])
         elif isinstance(item, SharedRiskGroup) and self._in_group.get(item.id):
             raise PlanError(f"{name} still has links")
+
+    def _check_untried(self, name: str, **things: list[str]) -> None:
+        if self.trial.without_things(**things) != self.trial:
+            raise PlanError(f"{name} is changed by the trial")
+        for kept in self.trials:
+            if kept.trial.without_things(**things) != kept.trial:
+                raise PlanError(f"{name} is changed by the trial {quoted(kept.name)}")
 
     def _count(self, item: Item, by: int) -> None:
         """Keep the indexes of who refers to whom."""
@@ -318,7 +334,8 @@ class Plan:
             for link in self.links:
                 ends = self.nodes.get(link.source), self.nodes.get(link.target)
                 check_link(link, *ends, new.cost_style)
-            self._check_trial(self.trial, new.cost_style)
+            for trial in (self.trial, *(kept.trial for kept in self.trials)):
+                self._check_trial(trial, new.cost_style)
         self.settings = new
 
     def _change_trial(self, step: ChangeTrial) -> None:

@@ -243,6 +243,40 @@ def along_paths(
             paths[v] = min(MANY, paths[v] + paths[u])
 
 
+@compiled
+def worst_delays(
+    indptr: Array,
+    head: Array,
+    link: Array,
+    routers: int,
+    weight: Array,
+    transit: Array,
+    delay: Array,
+    unreached: int,
+    sources: Array,
+    rows: Array,
+    worst: Array,
+) -> None:
+    """Write the most delay over equal-cost paths from each of ``sources`` (S,) to every
+    vertex into ``worst`` (S, V); NaN where it is not known. ``rows`` (S, V) are distances.
+    """
+    vertices = len(indptr) - 1
+    ptr = np.empty(vertices + 1, np.int32)
+    arcs = np.empty(len(head), np.int32)
+    order = np.empty(vertices, np.int32)
+    hops = np.empty(vertices, np.int32)
+    least = np.empty(vertices, np.float64)
+    paths = np.empty(vertices, np.int64)
+    for i in range(len(sources)):
+        reached = tight_arcs(
+            indptr, head, weight, transit, sources[i], rows[i], unreached, ptr, arcs, order
+        )
+        along_paths(
+            head, link, routers, delay, sources[i], ptr, arcs, order, reached, hops, least,
+            worst[i], paths,
+        )  # fmt: skip
+
+
 MOVED, CUT_OFF, RESTORED, UNCHANGED = 0, 1, 2, -1
 
 

@@ -247,10 +247,17 @@ class Answers:
         answer still comes, the ledger more slowly."""
         return self.network.structure.routers <= pairs.MOST_KEPT
 
-    def ledger_task(self) -> Callable[[Callable[[], bool]], Ledger]:
-        """Return the work that computes the ledger of the trial as it stands now: for one
-        background thread at a time, with a function that tells whether to stop."""
-        before, after, states = self.network, self.in_trial, self._pairs
+    def against(self, kept: str) -> Network:
+        """Return what the trial is compared with: the plan, or with a kept trial over it."""
+        if not kept:
+            return self.network
+        return self.network.laid_over(self._document.plan.trials[kept].trial)
+
+    def ledger_task(self, kept: str = "") -> Callable[[Callable[[], bool]], Ledger]:
+        """Return the work that computes the ledger of the trial as it stands now against
+        the plan, or against a ``kept`` trial: for one background thread at a time, with a
+        function that tells whether to stop."""
+        before, after, states = self.against(kept), self.in_trial, self._pairs
         return lambda cancelled: states.ledger(before, after, cancelled)
 
 

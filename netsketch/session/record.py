@@ -17,6 +17,7 @@ from netsketch.readings.reading import Reading
 from netsketch.reports.record import DEFAULT_ROWS, Origin, Picture, Record, gather, ledger_csv
 from netsketch.reports.record_html import html
 from netsketch.reports.record_markdown import markdown, picture_file
+from netsketch.reports.record_numbers import most_changed
 from netsketch.reports.record_words import shown
 from netsketch.routing import never
 from netsketch.session.answers import Answers
@@ -37,7 +38,7 @@ Printer = Callable[[Record], bytes]
 @dataclass(frozen=True)
 class Wishes:
     """What a person asks of a record. ``router`` (an id) is the one drawn before and after;
-    ``None``: the one hit hardest. ``file`` is the plan's file, ``None`` where it has none."""
+    ``None``: the one with the most changed routes. ``file`` is the plan's file, ``None`` where it has none."""
 
     out: Path
     file: Path | None
@@ -76,7 +77,7 @@ def write(
         cancelled=cancelled,
     )
     if draw is not None:
-        router = wishes.router or (record.routers_hit[0].id if record.routers_hit else None)
+        router = wishes.router or most_changed(record.routers_hit)
         record = replace(record, pictures=_pictures(document.plan, answers, router, draw))
     beside = []
     if record.ledger_file:

@@ -65,6 +65,7 @@ ENTRIES: tuple[Entry, ...] = (
           "T"),
     Entry("adopt", "Trial", "Adopt", "Make the trial the plan", "Ctrl+Return"),
     Entry("discard", "Trial", "Discard", "Drop every change of the trial", "Ctrl+Backspace"),
+    Entry("keep_trial", "Trial", "Keep as…", "Put the trial by under a name", "K"),
     Entry("outward", "Reading", "Outward", "Show the focus router's source tree", "O", "reading"),
     Entry("inward", "Reading", "Inward", "Show how everyone reaches the focus router", "I",
           "reading"),

@@ -42,6 +42,7 @@ def handlers(window: MainWindow) -> dict[str, Callable[[], object]]:
         "toggle_drained": partial(_toggle_drained, w),
         "drain_by_cost": partial(_drain_by_cost, w),
         "try_cost": partial(_try_cost, w),
+        "keep_trial": partial(_keep_trial, w),
         "adopt": lambda: desk.apply(edits.adopt(desk.document.plan)),
         "discard": lambda: desk.apply(edits.discard(desk.document.plan)),
         "outward": partial(desk.show_kind, "outward"),
@@ -93,6 +94,12 @@ def _drain_by_cost(window: MainWindow) -> None:
         window.hint("Only routers can be drained")
         return
     window.desk.apply(edits.drain_by_cost(window.desk.document.plan, node))
+
+
+def _keep_trial(window: MainWindow) -> None:
+    name = window.ask.text("Keep the trial", "Name", "")
+    if name is not None and name.strip():
+        window.desk.apply(edits.keep_trial(window.desk.document.plan, name.strip()))
 
 
 def _try_cost(window: MainWindow) -> None:

@@ -55,8 +55,9 @@ class Desk(QObject):
         self.tipping: tuple[Tipping, Tipping] | None = None
         self.ledger: Ledger | None = None
         self.is_computing = False
-        self._compared: tuple[object, object] = (None, None)
-        """The two networks that the ledger was last asked about."""
+        self.baseline = ""
+        self._compared: tuple[object, ...] = (None, None, None)
+        """What the ledger was last asked about: two networks and the kept trial."""
 
     # -- the document -------------------------------------------------------------------
 
@@ -198,19 +199,33 @@ class Desk(QObject):
 
     # -- the ledger -----------------------------------------------------------------------
 
+    def set_baseline(self, kept: str) -> None:
+        """Compare the trial with a kept trial, or ("") with the plan."""
+        self.baseline = kept
+        self._ask_ledger()
+
+    @property
+    def compares(self) -> bool:
+        """Whether there are two states to compare."""
+        return bool(self.document.plan.trial) or bool(self.baseline)
+
     def _ask_ledger(self) -> None:
         if self.answers is None:
             return
         plan = self.document.plan
-        compared = self.answers.network, self.answers.in_trial
+        if self.baseline not in plan.trials:
+            self.baseline = ""
+        kept = plan.trials[self.baseline].changes if self.baseline else ()
+        compared = self.answers.network, self.answers.in_trial, kept
         if all(one is other for one, other in zip(compared, self._compared, strict=True)):
             return
         self._compared = compared
-        self.is_computing = bool(plan.trial)
-        if not plan.trial:
+        self.is_computing = self.compares
+        if not self.compares:
             self.ledger = None
         if any(isinstance(node, Router) for node in plan.nodes):
-            self._relay.submit("ledger", self.answers.ledger_task(), self._ledger_came)
+            task = self.answers.ledger_task(self.baseline)
+            self._relay.submit("ledger", task, self._ledger_came)
         else:
             self._relay.give_up("ledger")
             self.is_computing = False
@@ -221,7 +236,7 @@ class Desk(QObject):
         if isinstance(result, Exception):
             self.refused.emit(f"The ledger could not be computed: {result}")
         else:
-            self.ledger = result if self.document.plan.trial else None
+            self.ledger = result if self.compares else None
         self.ledger_changed.emit()
 
 

@@ -19,7 +19,7 @@ if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
 
 HEADERS = (
-    "From", "To", "Outcome", "Cost before", "Cost after", "Extra", "Next hops before",
+    "From", "To", "Outcome", "Cost before", "Cost after", "Extra", "Extra ms", "Next hops before",
     "Next hops after",
 )  # fmt: skip
 TIPS = (
@@ -29,12 +29,13 @@ TIPS = (
     "In the plan",
     "In the trial",
     "Cost after less cost before",
+    "Most delay after less most delay before, in ms; empty where a delay is not known",
     "In the plan",
     "In the trial",
 )
 OUTCOMES = ("moved", "cut off", "restored")
-_NUMBERS = (3, 4, 5)
-_SORTABLE = range(6)
+_NUMBERS = (3, 4, 5, 6)
+_SORTABLE = range(7)
 
 _DISPLAY, _TOOL_TIP = Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole
 _ALIGN = Qt.ItemDataRole.TextAlignmentRole
@@ -55,6 +56,8 @@ class LedgerModel(QAbstractTableModel):
         self._chosen = np.empty(0, np.int64)
         self._order: tuple[int, bool] = (0, False)
         self._text, self._outcome = "", -1
+        self._least_cost: int | None = None
+        self._least_delay: float | None = None
         self._texts = lru_cache(maxsize=2048)(self._texts_of)
 
     def show(self, ledger: Ledger | None, plan: Plan) -> None:
@@ -71,10 +74,17 @@ class LedgerModel(QAbstractTableModel):
         self._choose()
         self.endResetModel()
 
-    def set_filter(self, text: str, outcome: int) -> None:
-        """Show only pairs with ``text`` in the name or id of either router and with this
-        outcome code (-1: any)."""
+    def set_filter(
+        self,
+        text: str,
+        outcome: int,
+        least_cost: int | None = None,
+        least_delay: float | None = None,
+    ) -> None:
+        """Show only pairs with ``text`` in the name or id of either router, with this
+        outcome code (-1: any), and with at least so much extra cost and extra delay."""
         self._text, self._outcome = text.strip().casefold(), outcome
+        self._least_cost, self._least_delay = least_cost, least_delay
         self.beginResetModel()
         self._choose()
         self.endResetModel()
@@ -102,22 +112,28 @@ class LedgerModel(QAbstractTableModel):
             keep &= named[ledger.sources] | named[ledger.targets]
         if self._outcome >= 0:
             keep &= ledger.outcomes == self._outcome
+        if self._least_cost is not None:
+            both = (ledger.before >= 0) & (ledger.after >= 0)
+            keep &= both & (ledger.after - ledger.before >= self._least_cost)
+        if self._least_delay is not None:
+            keep &= ledger.delay_after - ledger.delay_before >= self._least_delay
         chosen = np.flatnonzero(keep)
         column, backwards = self._order
         key = self._key(ledger, column)[chosen]
         order = np.argsort(-key if backwards else key, kind="stable")
         self._chosen = chosen[order]
 
-    def _key(self, ledger: Ledger, column: int) -> npt.NDArray[np.int64]:
+    def _key(self, ledger: Ledger, column: int) -> npt.NDArray[Any]:
         keys: tuple[npt.NDArray[Any], ...] = (
             self._alphabet[ledger.sources],
             self._alphabet[ledger.targets],
-            ledger.outcomes,
+            ledger.outcomes.astype(np.int64),
             ledger.before,
             ledger.after,
             ledger.after - ledger.before,
+            ledger.delay_after - ledger.delay_before,
         )
-        return keys[column].astype(np.int64)
+        return keys[column]
 
     def pair(self, index: int) -> tuple[str, str]:
         """Return the routers of a shown row."""
@@ -136,6 +152,7 @@ class LedgerModel(QAbstractTableModel):
         found = self.ledger.row(row)
         before, after = found.cost_before, found.cost_after
         extra = "" if before is None or after is None else f"{after - before:+d}"
+        delay = float(self.ledger.delay_after[row] - self.ledger.delay_before[row])
         return (
             self._labels[self.ledger.sources[row]],
             self._labels[self.ledger.targets[row]],
@@ -143,6 +160,7 @@ class LedgerModel(QAbstractTableModel):
             "–" if before is None else str(before),
             "–" if after is None else str(after),
             extra,
+            "" if np.isnan(delay) else f"{delay:+.4g}",
             next_hops_text(self._plan, found.next_hops_before),
             next_hops_text(self._plan, found.next_hops_after),
         )

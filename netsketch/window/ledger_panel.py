@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -30,7 +32,7 @@ if TYPE_CHECKING:
 
 ROWS_AT_ONCE = 400
 MOST_COPIED = 100_000
-_WIDTHS = (150, 150, 100, 90, 90, 70, 260, 260)
+_WIDTHS = (140, 140, 96, 90, 86, 64, 72, 240, 240)
 
 
 class LedgerPanel(QWidget):
@@ -38,6 +40,8 @@ class LedgerPanel(QWidget):
 
     pair_asked = Signal(str, str)
     hint = Signal(str)
+    baseline_asked = Signal(str)
+    """The kept trial to compare with; "" is the plan."""
 
     def __init__(self, ask: Questions, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -49,6 +53,11 @@ class LedgerPanel(QWidget):
         self.filter.setPlaceholderText("Filter by router")
         self.filter.setAccessibleName("Filter the ledger by router")
         self.filter.setClearButtonEnabled(True)
+        self.against = QComboBox()
+        self.against.setAccessibleName("What the trial is compared with")
+        self.against.setToolTip("Compare the trial with the plan or with a kept trial")
+        self.least_cost = _least("extra cost from", "Least extra cost")
+        self.least_delay = _least("extra ms from", "Least extra delay in ms")
         self.outcome = QComboBox()
         self.outcome.addItems(["every outcome", *OUTCOMES])
         self.outcome.setAccessibleName("Filter the ledger by outcome")
@@ -60,6 +69,9 @@ class LedgerPanel(QWidget):
         self._lay_out()
         self.filter.textChanged.connect(self._refilter)
         self.outcome.currentIndexChanged.connect(self._refilter)
+        self.least_cost.textChanged.connect(self._refilter)
+        self.least_delay.textChanged.connect(self._refilter)
+        self.against.activated.connect(self._compare)
         self.copy.clicked.connect(self._copy)
         self.export.clicked.connect(self._export)
         self.table.selectionModel().currentRowChanged.connect(self._ask_pair)
@@ -72,7 +84,10 @@ class LedgerPanel(QWidget):
         title.setProperty("role", "heading")
         top.addWidget(title)
         top.addWidget(self.totals, 1)
-        for widget in (self.filter, self.outcome, self.copy, self.export):
+        for widget in (
+            self.against, self.filter, self.outcome, self.least_cost, self.least_delay, self.copy,
+            self.export,
+        ):  # fmt: skip
             top.addWidget(widget)
         column = QVBoxLayout(self)
         column.setContentsMargins(12, 4, 12, 8)
@@ -85,6 +100,18 @@ class LedgerPanel(QWidget):
         self._title = plan.settings.name or "ledger"
         self.model.show(ledger, plan)
         self._show_totals()
+
+    def show_kept(self, names: Sequence[str], chosen: str) -> None:
+        """Offer the plan and kept trials to compare with."""
+        self.against.clear()
+        self.against.addItem("against the plan", "")
+        for name in names:
+            self.against.addItem(f"against {name[:40]}", name)
+        self.against.setCurrentIndex(max(self.against.findData(chosen), 0))
+        self.against.setVisible(bool(names))
+
+    def _compare(self) -> None:
+        self.baseline_asked.emit(self.against.currentData())
 
     def show_computing(self) -> None:
         """Say that the ledger is on its way; the rows of before stay until then."""
@@ -108,7 +135,13 @@ class LedgerPanel(QWidget):
 
     def _refilter(self) -> None:
         self._writer.stop()
-        self.model.set_filter(self.filter.text(), self.outcome.currentIndex() - 1)
+        cost, delay = _number(self.least_cost.text()), _number(self.least_delay.text())
+        self.model.set_filter(
+            self.filter.text(),
+            self.outcome.currentIndex() - 1,
+            None if cost is None else math.ceil(cost),
+            delay,
+        )
         self._show_totals()
 
     def _ask_pair(self) -> None:
@@ -127,6 +160,22 @@ class LedgerPanel(QWidget):
         path = self._ask.file_for_table(Path.home() / f"{self._title}-ledger.csv")
         if path is not None:
             self._writer.start(self.model.rowCount(), path)
+
+
+def _least(words: str, name: str) -> QLineEdit:
+    field = QLineEdit()
+    field.setPlaceholderText(words)
+    field.setAccessibleName(name)
+    field.setMaximumWidth(110)
+    return field
+
+
+def _number(text: str) -> float | None:
+    """Return the number that was typed; none where it is not one yet."""
+    try:
+        return float(text)
+    except ValueError:
+        return None
 
 
 class _CsvWriter(QTimer):

@@ -21,7 +21,7 @@ from PySide6.QtWidgets import (
 
 from netsketch.session.jobs import Jobs
 from netsketch.sheet import Sheet
-from netsketch.window import actions, commands
+from netsketch.window import actions, commands, kept_trials
 from netsketch.window.desk import Desk, Focus
 from netsketch.window.files import Files, demo_files
 from netsketch.window.inspector import Inspector
@@ -95,6 +95,8 @@ class MainWindow(QMainWindow):
         for name, path in demo_files():
             self._demos.addAction(name, partial(self.files.open_path, path))
         self._recent = QMenu("Open recent", self)
+        self._kept = QMenu("Kept trials", self)
+        self.menus["Trial"].addMenu(self._kept)
         for menu in (self._demos, self._recent):
             self.menus["File"].insertMenu(self.actions_by_id["save"], menu)
 
@@ -135,6 +137,7 @@ class MainWindow(QMainWindow):
         self.inspector.path_lit.connect(sheet.light_path)
         self.inspector.path_asked.connect(desk.set_pair)
         self.ledger.pair_asked.connect(partial(desk.set_pair, changed=True))
+        self.ledger.baseline_asked.connect(desk.set_baseline)
         desk.tipping_changed.connect(self._show_tipping)
         self.strip.ledger_asked.connect(self.toggle_ledger)
         desk.document_changed.connect(self._show_document)
@@ -174,8 +177,11 @@ class MainWindow(QMainWindow):
             action.setToolTip(f"{word}: {label}" if label else f"Nothing to {key}")
             action.setIconText(word)
             action.setText(f"{word}: {label[:60]}" if label else word)
+        kept_trials.fill(self._kept, document.plan, self.desk.apply)
+        self._kept.setEnabled(len(document.plan.trials) > 0)
+        self.ledger.show_kept(document.plan.trials.keys(), self.desk.baseline)
         tried = bool(document.plan.trial)
-        for key in ("adopt", "discard", "effect"):
+        for key in ("adopt", "discard", "effect", "keep_trial"):
             self.actions_by_id[key].setEnabled(tried)
 
     def _show_focus(self) -> None:
@@ -223,12 +229,13 @@ class MainWindow(QMainWindow):
 
     def _show_ledger(self) -> None:
         desk = self.desk
+        self.ledger.show_kept(desk.document.plan.trials.keys(), desk.baseline)
         if desk.is_computing:
             self.ledger.show_computing()
             self.strip.show_totals("computing…")
             return
         self.ledger.set_ledger(desk.ledger, desk.document.plan)
-        self.strip.show_totals(_totals(desk.ledger) if desk.document.plan.trial else "")
+        self.strip.show_totals(_totals(desk.ledger) if desk.compares else "")
 
     def _show_tool(self, tool: str) -> None:
         self.actions_by_id[f"tool_{tool}"].setChecked(True)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import numpy as np
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
@@ -41,6 +42,12 @@ def test_ledger_is_what_the_definition_says(plan: Plan, data: st.DataObject) -> 
         assert row.cost_after == now.distance.get(row.target)
         assert set(row.next_hops_before) == was.next_hops.get(row.target, set())
         assert set(row.next_hops_after) == now.next_hops.get(row.target, set())
+        for network_plan, delay in ((plan, ledger.delay_before), (tried, ledger.delay_after)):
+            network = compile_plan(network_plan)
+            vertex = network.structure.vertex_of
+            known = Routes(network, vertex[row.source]).delay_ms(vertex[row.target])
+            assert np.isnan(delay[index]) == (known is None)
+            assert known is None or delay[index] == known[1]
         assert ledger.before[index] == (-1 if row.cost_before is None else row.cost_before)
         assert ledger.after[index] == (-1 if row.cost_after is None else row.cost_after)
 

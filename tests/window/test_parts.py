@@ -263,3 +263,53 @@ def test_the_picture_of_the_sheet(harbour: Person, tmp_path: Path) -> None:
     harbour.ask.path = tmp_path / "sheet.svg"
     harbour.do("save_picture")
     assert "Gate-N" in harbour.ask.path.read_text()
+
+
+def test_trials_are_kept_laid_compared_and_forgotten(harbour: Person, qtbot: QtBot) -> None:
+    harbour.click(harbour.at(find(harbour, "Hub-W")))
+    harbour.key(Qt.Key.Key_D)
+    harbour.ask.line = "west first"
+    harbour.key(Qt.Key.Key_K)
+    assert harbour.plan.trials.keys() == ["west first"]
+    harbour.do("discard")
+    harbour.click(harbour.at(find(harbour, "Hub-E")))
+    harbour.key(Qt.Key.Key_D)
+    harbour.settle()
+    panel = harbour.window.ledger
+    against_plan = harbour.window.desk.ledger
+    harbour.key(Qt.Key.Key_L)
+    assert panel.against.count() == 2
+    panel.against.setCurrentIndex(1)
+    panel.against.activated.emit(1)
+    harbour.settle()
+    against_kept = harbour.window.desk.ledger
+    assert against_kept is not None
+    assert against_kept.restored > 0, "Hub-W is down in the kept trial and up in this one"
+    panel.against.setCurrentIndex(0)
+    panel.against.activated.emit(0)
+    harbour.settle()
+    assert list(harbour.window.desk.ledger or ()) == list(against_plan or ())
+    lay, forget = harbour.window._kept.actions()[0].menu().actions()
+    lay.trigger()
+    assert harbour.plan.trial.changes == (NodeState(find(harbour, "Hub-W"), False),)
+    lay, forget = harbour.window._kept.actions()[0].menu().actions()
+    forget.trigger()
+    assert not len(harbour.plan.trials)
+    harbour.do("undo")
+    assert harbour.plan.trials.keys() == ["west first"]
+
+
+def test_the_ledger_filters_by_extra_cost_and_delay(harbour: Person, qtbot: QtBot) -> None:
+    harbour.click(harbour.at(find(harbour, "Hub-W")))
+    harbour.key(Qt.Key.Key_D)
+    harbour.settle()
+    harbour.key(Qt.Key.Key_L)
+    panel, ledger = harbour.window.ledger, harbour.window.desk.ledger
+    assert ledger is not None
+    qtbot.keyClicks(panel.least_cost, "20")
+    extra = (ledger.after - ledger.before)[(ledger.after >= 0) & (ledger.before >= 0)]
+    assert panel.model.rowCount() == int((extra >= 20).sum()) > 0
+    panel.least_cost.clear()
+    qtbot.keyClicks(panel.least_delay, "0.1")
+    delay = ledger.delay_after - ledger.delay_before
+    assert panel.model.rowCount() == int((delay >= 0.1).sum()) > 0
