@@ -19,6 +19,7 @@ COMMANDS: Final = {
     "path": "the equal-cost paths between two routers, and the way back",
     "trial": "every pair of routers that failures or cost changes move or cut off",
     "survey": "every failure of a kind, ranked by what it does",
+    "record": "the change record of failures or cost changes, to attach to a change ticket",
     "picture": "a picture of the plan, bare or with a reading",
     "convert": "the plan in another file format",
 }
@@ -52,7 +53,7 @@ def main(argv: Sequence[str]) -> int:
         return refused("standard output was closed before everything was written")
     except OSError as error:
         _give_output_up()
-        return refused(": ".join(str(p) for p in (error.filename, error.strerror or error) if p))
+        return refused(f"{error.filename or 'standard output'}: {error.strerror or error}")
     except KeyboardInterrupt:
         refused("stopped")
         return INTERRUPTED

@@ -20,9 +20,12 @@ CALLS: dict[str, Words] = {
     "path": lambda file, out: ["path", file, "--from", "a", "--to", "b"],
     "trial": lambda file, out: ["trial", file, "--down", "a-b"],
     "survey": lambda file, out: ["survey", file, "--of", "links"],
+    "record": lambda file, out: [
+        "record", file, "--down", "a-b", "-o", out.with_suffix(".md"), "--no-pictures",
+    ],
     "picture": lambda file, out: ["picture", file, "-o", out.with_suffix(".svg")],
     "convert": lambda file, out: ["convert", file, out.with_suffix(".gml")],
-}
+}  # fmt: skip
 
 BILLION_LAUGHS = (
     b'<?xml version="1.0"?><!DOCTYPE graphml [<!ENTITY a "ha"><!ENTITY b "&a;&a;&a;&a;">]>'
@@ -91,6 +94,7 @@ def test_no_file_and_a_folder(run: Run, tmp_path: Path, command: str) -> None:
         ["path", "--from", "a", "--to", "nobody"],
         ["trial", "--drain", "nobody"],
         ["survey", "--of", "links", "--drain", "nobody"],
+        ["record", "-o", "out.md", "--down", "a-b", "--from", "nobody"],
         ["picture", "-o", "out.svg", "--from", "nobody"],
     ],
 )
@@ -147,6 +151,7 @@ USAGE = [
     ["trial", "plan.json", "--cost", "l1="],
     ["survey", "plan.json"],
     ["survey", "plan.json", "--of", "moons"],
+    ["record", "plan.json"],
     ["picture", "plan.json"],
     ["convert", "plan.json"],
     ["convert", "a.json", "b.gml", "c.gml"],
