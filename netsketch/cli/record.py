@@ -36,7 +36,8 @@ def add_options(parser: ArgumentParser) -> None:
         "--from",
         dest="source",
         metavar="R",
-        help="the router whose routes are drawn before and after (default: the one hit hardest)",
+        help="the router whose routes are drawn before and after (default: the one with the most "
+        "changed routes)",
     )
     parser.add_argument("--no-pictures", action="store_true", help="leave the pictures out")
     plan_options.add_trial(parser)

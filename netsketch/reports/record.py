@@ -12,6 +12,7 @@ from dataclasses import dataclass
 from netsketch.analysis import Ledger, LedgerRow
 from netsketch.model import Plan
 from netsketch.reports.ledger import LEDGER_COLUMNS, ledger_cells
+from netsketch.reports.record_figures import percent
 from netsketch.reports.record_numbers import (
     LinkLoad,
     Loads,
@@ -200,5 +201,5 @@ def _worst(ledger: Ledger, names: Names) -> str:
 def _fullest(link: LinkLoad) -> Iterator[str]:
     if link.used_after is not None:
         where = f"{link.name} towards {link.head}"
-        was = "" if link.used_before is None else f" (now {link.used_before:.0%})"
-        yield f"The fullest link is {where}, at {link.used_after:.0%}{was}."
+        was = "" if link.used_before is None else f" (now {percent(link.used_before)})"
+        yield f"The fullest link is {where}, at {percent(link.used_after)}{was}."

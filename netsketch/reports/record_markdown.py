@@ -9,7 +9,7 @@ from urllib.parse import quote
 
 from netsketch.reports import cautions
 from netsketch.reports.record import Record
-from netsketch.reports.record_html import MOST, cost, count, more, percent, rate, signed
+from netsketch.reports.record_figures import MOST, cost, count, more, percent, rate, signed
 from netsketch.reports.record_words import Step, shown
 
 _MARKUP = re.compile(r"[\\`*_{}\[\]()<>#|~!&$@^:=\"]|(?<=www)\.", re.IGNORECASE)

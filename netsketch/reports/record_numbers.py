@@ -68,6 +68,12 @@ def routers_hit(ledger: Ledger, names: Names) -> tuple[RouterHit, ...]:
     )
 
 
+def most_changed(hits: tuple[RouterHit, ...]) -> str | None:
+    """Return the id of the router with the most changed routes, to draw before and after."""
+    most = max(hits, key=lambda hit: hit.cut_off + hit.moved + hit.restored, default=None)
+    return None if most is None else most.id
+
+
 @dataclass(frozen=True, slots=True)
 class SinglePoint:
     """A failure that cuts off more pairs of routers in the trial than in the plan."""

@@ -38,7 +38,8 @@ Printer = Callable[[Record], bytes]
 @dataclass(frozen=True)
 class Wishes:
     """What a person asks of a record. ``router`` (an id) is the one drawn before and after;
-    ``None``: the one with the most changed routes. ``file`` is the plan's file, ``None`` where it has none."""
+    ``None``: the one with the most changed routes. ``file`` is the plan's file, ``None``
+    where it has none."""
 
     out: Path
     file: Path | None

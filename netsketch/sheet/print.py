@@ -2,7 +2,19 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import QBuffer, QByteArray, QIODevice, QMarginsF, QObject, QRect, QRectF, QSizeF, Qt
+import re
+
+from PySide6.QtCore import (
+    QBuffer,
+    QByteArray,
+    QIODevice,
+    QMarginsF,
+    QObject,
+    QRect,
+    QRectF,
+    QSizeF,
+    Qt,
+)
 from PySide6.QtGui import (
     QAbstractTextDocumentLayout,
     QColor,
@@ -12,6 +24,8 @@ from PySide6.QtGui import (
     QPainter,
     QPdfWriter,
     QPyTextObject,
+    QTextBlock,
+    QTextCursor,
     QTextDocument,
     QTextFormat,
 )
@@ -22,12 +36,16 @@ from netsketch.reports.record_html import PAGE_PICTURE, print_html
 from netsketch.sheet.look import LIGHT
 from netsketch.sheet.picture import ensure_application
 
-DOTS = 288
-"""Dots per inch in which pages are laid out: fine enough for hairlines."""
+DOTS, LAID_OUT = 288, 96
+"""Dots per inch of the pages, fine enough for hairlines, and of the layout: pixels of CSS."""
 
 MARGIN_MM, FOOT_MM = 14.0, 8.0
 PART_OF_PAGE = 0.44
 """The highest a picture gets, as a part of the page: two stand on one."""
+
+
+_EMPTY_PATH = re.compile(r'<path [^>]*d=""/>')
+"""What Qt writes where nothing is painted, and warns of when it reads it."""
 
 
 class _Pictures(QPyTextObject):
@@ -37,7 +55,9 @@ class _Pictures(QPyTextObject):
         super().__init__(parent)
         self._page = page
         self._drawn = {
-            PAGE_PICTURE.format(n): QSvgRenderer(QByteArray(picture.svg.encode()), self)
+            PAGE_PICTURE.format(n): QSvgRenderer(
+                QByteArray(_EMPTY_PATH.sub("", picture.svg).encode()), self
+            )
             for n, picture in enumerate(record.pictures)
         }
 
@@ -47,7 +67,12 @@ class _Pictures(QPyTextObject):
         return size.scaled(widest, Qt.AspectRatioMode.KeepAspectRatio)
 
     def drawObject(  # noqa: N802
-        self, painter: QPainter, rect: QRectF | QRect, doc: QTextDocument, at: int, form: QTextFormat
+        self,
+        painter: QPainter,
+        rect: QRectF | QRect,
+        doc: QTextDocument,
+        at: int,
+        form: QTextFormat,
     ) -> None:
         self._renderer(form).render(painter, QRectF(rect))
 
@@ -68,30 +93,54 @@ def pdf(record: Record) -> bytes:
     writer.setResolution(DOTS)
     writer.setPageSize(QPageSize(QPageSize.PageSizeId.A4))
     writer.setPageMargins(QMarginsF(MARGIN_MM, MARGIN_MM, MARGIN_MM, MARGIN_MM))
-    foot = FOOT_MM / 25.4 * DOTS
-    area = QSizeF(writer.width(), writer.height() - foot)
-    _paint(_laid_out(record, area, writer), area, foot, writer, record.title)
+    foot = FOOT_MM / 25.4 * LAID_OUT
+    area = QSizeF(writer.width(), writer.height()) * (LAID_OUT / DOTS) - QSizeF(0, foot)
+    _paint(_laid_out(record, area), area, foot, writer, record.title)
     buffer.close()
     return bytes(data.data())
 
 
-def _laid_out(record: Record, area: QSizeF, writer: QPdfWriter) -> QTextDocument:
+def _laid_out(record: Record, area: QSizeF) -> QTextDocument:
     text = QTextDocument()
     text.setUndoRedoEnabled(False)
-    text.setDefaultFont(QFont(QGuiApplication.font().family(), 9))
-    text.documentLayout().setPaintDevice(writer)
+    text.setDefaultFont(_font(12))
     text.documentLayout().registerHandler(
         QTextFormat.ObjectTypes.ImageObject.value, _Pictures(record, area, text)
     )
     text.setDocumentMargin(0)
     text.setPageSize(area)
     text.setHtml(print_html(record))
+    _keep_headings(text, area.height())
     return text
+
+
+def _keep_headings(text: QTextDocument, height: float) -> None:
+    """Move every heading to the page of what it heads."""
+
+    def page(block: QTextBlock) -> int:
+        return int(text.documentLayout().blockBoundingRect(block).top() // height)
+
+    block = text.begin()
+    while block.isValid():
+        after = block.next()
+        if block.blockFormat().headingLevel() and after.isValid() and page(after) > page(block):
+            form = block.blockFormat()
+            form.setPageBreakPolicy(QTextFormat.PageBreakFlag.PageBreak_AlwaysBefore)
+            QTextCursor(block).setBlockFormat(form)
+            _lay_out_anew(text)
+        block = after
+
+
+def _lay_out_anew(text: QTextDocument) -> None:
+    """Lay all of the text out: a change alone leaves tables and pictures behind it where
+    they were."""
+    text.markContentsDirty(0, text.characterCount())
 
 
 def _paint(text: QTextDocument, area: QSizeF, foot: float, writer: QPdfWriter, title: str) -> None:
     pages = text.pageCount()
     with QPainter(writer) as painter:
+        painter.scale(DOTS / LAID_OUT, DOTS / LAID_OUT)
         for page in range(pages):
             if page:
                 writer.newPage()
@@ -108,7 +157,14 @@ def _paint(text: QTextDocument, area: QSizeF, foot: float, writer: QPdfWriter, t
 
 def _paint_foot(painter: QPainter, place: QRectF, title: str, number: str) -> None:
     painter.setPen(QColor(LIGHT.soft))
-    painter.setFont(QFont(QGuiApplication.font().family(), 7))
+    painter.setFont(_font(10))
     below = Qt.AlignmentFlag.AlignBottom
     painter.drawText(place, below | Qt.AlignmentFlag.AlignLeft, title)
     painter.drawText(place, below | Qt.AlignmentFlag.AlignRight, number)
+
+
+def _font(pixels: int) -> QFont:
+    font = QFont(QGuiApplication.font())
+    font.setPixelSize(pixels)
+    font.setHintingPreference(QFont.HintingPreference.PreferNoHinting)
+    return font
