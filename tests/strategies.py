@@ -14,6 +14,7 @@ from hypothesis import strategies as st
 from netsketch.model import (
     COST_RANGES,
     Add,
+    AddedLink,
     Change,
     Demand,
     Drained,
@@ -182,6 +183,8 @@ def trial_changes(plan: Plan) -> st.SearchStrategy[TrialChange]:
     """Return changes that a trial over ``plan`` (not empty) can hold."""
     node = st.sampled_from(plan.nodes.keys())
     choices: list[st.SearchStrategy[TrialChange]] = [st.builds(NodeState, node, st.booleans())]
+    if len(plan.nodes) > 1 and plan.routers():
+        choices.append(_added_links(plan))
     if routers_there := [router.id for router in plan.routers()]:
         choices.append(st.builds(Drained, st.sampled_from(routers_there), st.booleans()))
     if len(plan.links):
@@ -189,6 +192,22 @@ def trial_changes(plan: Plan) -> st.SearchStrategy[TrialChange]:
         choices.append(st.builds(LinkState, link, st.booleans()))
         choices.append(link.flatmap(lambda key: _cost_change(plan, key)))
     return st.one_of(choices)
+
+
+@st.composite
+def _added_links(draw: st.DrawFn, plan: Plan) -> AddedLink:
+    key = draw(st.sampled_from(["new 1", "new 2"]))
+    before = next((added for added in plan.added_links() if added.link == key), None)
+    if before is not None:  # ids of added links are one link's, whichever trial adds it
+        return before
+    if key in plan.links:
+        return AddedLink(plan.unused_id("l"), *_some_ends(draw, plan))
+    return AddedLink(key, *_some_ends(draw, plan))
+
+
+def _some_ends(draw: st.DrawFn, plan: Plan) -> tuple[str, str, int, int]:
+    link = draw(links("new", list(plan.nodes), [], plan.settings.cost_style))
+    return link.source, link.target, link.cost, link.cost_back
 
 
 def _cost_change(plan: Plan, key: str) -> st.SearchStrategy[TrialChange]:

@@ -15,11 +15,20 @@ from netsketch.model.items import (
     SharedRiskGroup,
 )
 from netsketch.model.plan import ChangeSet, Plan
-from netsketch.model.trial import Drained, LinkCost, LinkState, NodeState, Trial, TrialChange
+from netsketch.model.trial import (
+    AddedLink,
+    Drained,
+    LinkCost,
+    LinkState,
+    NodeState,
+    Trial,
+    TrialChange,
+)
 
 __all__ = [
     "COST_RANGES",
     "Add",
+    "AddedLink",
     "Change",
     "ChangeSet",
     "ChangeSettings",

@@ -19,9 +19,18 @@ from netsketch.model.items import (
     Router,
     Segment,
     SharedRiskGroup,
+    link_of,
 )
 from netsketch.model.plan import Plan
-from netsketch.model.trial import Drained, LinkCost, LinkState, NodeState, Trial, TrialChange
+from netsketch.model.trial import (
+    AddedLink,
+    Drained,
+    LinkCost,
+    LinkState,
+    NodeState,
+    Trial,
+    TrialChange,
+)
 
 replace = msgspec.structs.replace
 
@@ -199,6 +208,8 @@ def try_changes(plan: Plan, changes: Iterable[TrialChange], label: str) -> Edit:
 
 
 def _is_as_planned(plan: Plan, change: TrialChange) -> bool:
+    if isinstance(change, AddedLink):
+        return False
     if isinstance(change, LinkState):
         link = plan.links.get(change.link)
         return link is not None and link.up == change.up
@@ -285,6 +296,14 @@ def try_costs(plan: Plan, link: str, cost: int, cost_back: int) -> Edit:
     return try_changes(plan, [LinkCost(link, cost, cost_back)], f"try cost of link {link}")
 
 
+def try_link(plan: Plan, source: str, target: str, cost: int = 10) -> Edit:
+    """Return the edit that adds a link in the trial only."""
+    link = new_link(plan, source, target, cost)
+    added = AddedLink(link.id, source, target, link.cost, link.cost_back)
+    ends = f"{plan.nodes[source].label} to {plan.nodes[target].label}"
+    return try_changes(plan, [added], f"try a link {ends}")
+
+
 def drop_changes(plan: Plan, changes: Iterable[TrialChange]) -> Edit:
     """Return the edit that takes these changes out of the trial."""
     return Edit("drop a trial change", (ChangeTrial(plan.trial, plan.trial.without(*changes)),))
@@ -312,10 +331,13 @@ def forget_trial(plan: Plan, name: str) -> Edit:
 
 
 def trial_items(plan: Plan, trial: Trial) -> list[Item]:
-    """Return every node and link that ``trial`` changes, with the trial's values."""
+    """Return every node and link that ``trial`` changes, with the trial's values, and the
+    links it adds."""
     changed: dict[tuple[str, str], Item] = {}
     for wanted in trial:
-        if isinstance(wanted, LinkState | LinkCost):
+        if isinstance(wanted, AddedLink):
+            changed["link", wanted.link] = link_of(wanted)
+        elif isinstance(wanted, LinkState | LinkCost):
             place = ("link", wanted.link)
             link = changed.get(place, plan.links[wanted.link])
             values = (
@@ -336,8 +358,16 @@ def trial_items(plan: Plan, trial: Trial) -> list[Item]:
 
 def adopt(plan: Plan) -> Edit:
     """Return the edit that makes the trial the plan."""
-    edit = change(plan, trial_items(plan, plan.trial), "adopt the trial")
-    return Edit(edit.label, (*edit.steps, ChangeTrial(plan.trial, Trial())))
+    added = {each.link for each in plan.trial.added()}
+    items = trial_items(plan, plan.trial)
+    steps: list[Step] = [ChangeTrial(plan.trial, Trial())]
+    for kept in plan.trials:  # what becomes the plan's is no longer for them to add
+        left = tuple(c for c in kept.changes if not (isinstance(c, AddedLink) and c.link in added))
+        if left != kept.changes:
+            steps.append(Change(kept, replace(kept, changes=left)))
+    steps += change(plan, [i for i in items if i.key not in added or isinstance(i, Node)], "").steps
+    steps += add(plan, *(i for i in items if isinstance(i, Link) and i.id in added)).steps
+    return Edit("adopt the trial", tuple(steps))
 
 
 def discard(plan: Plan) -> Edit:

@@ -11,7 +11,7 @@ from typing import Any
 import msgspec
 
 from netsketch.model.costs import DEFAULT_STYLE
-from netsketch.model.trial import Trial, TrialChange
+from netsketch.model.trial import AddedLink, Trial, TrialChange
 
 Coordinate = int | float | None
 
@@ -141,6 +141,19 @@ class KeptTrial(msgspec.Struct, frozen=True, kw_only=True, tag="kept trial", tag
     def trial(self) -> Trial:
         """The trial itself."""
         return Trial(self.changes)
+
+
+def link_of(added: AddedLink) -> Link:
+    """Return the link that a trial adds."""
+    return Link(
+        id=added.link,
+        source=added.source,
+        target=added.target,
+        cost=added.cost,
+        cost_back=added.cost_back,
+        capacity_mbps=added.capacity_mbps,
+        delay_ms=added.delay_ms,
+    )
 
 
 Item = Router | Segment | Link | SharedRiskGroup | Demand | KeptTrial

@@ -35,8 +35,9 @@ from netsketch.model.items import (
     Segment,
     Settings,
     SharedRiskGroup,
+    link_of,
 )
-from netsketch.model.trial import Drained, LinkCost, LinkState, Trial
+from netsketch.model.trial import AddedLink, Drained, LinkCost, LinkState, Trial
 
 T = TypeVar("T", bound=Item)
 
@@ -168,7 +169,8 @@ class Plan:
         number = len(self.links if prefix == "l" else self.nodes) + 1
         shelves: dict[str, Shelf[Any]] = {"l": self.links, "g": self.groups}
         shelf = shelves.get(prefix, self.nodes)
-        while f"{prefix}{number}" in shelf or (taken and f"{prefix}{number}" in taken):
+        taken = (taken or set()) | {added.link for added in self.added_links()}
+        while f"{prefix}{number}" in shelf or f"{prefix}{number}" in taken:
             number += 1
         return f"{prefix}{number}"
 
@@ -259,6 +261,8 @@ class Plan:
         if not 0 <= index <= len(shelf):
             raise PlanError(f"{self._name(item)}: no position {index}")
         self._check(item)
+        if isinstance(item, Link) and item.id in {added.link for added in self.added_links()}:
+            raise PlanError(f"{self._name(item)} is added by a trial; adopt or drop that first")
         shelf._put(item, index)
         self._count(item, 1)
 
@@ -344,9 +348,32 @@ class Plan:
         self._check_trial(step.new, self.settings.cost_style)
         self.trial = step.new
 
+    def added_links(self) -> list[AddedLink]:
+        """Return the links that only trials have, the trial's before those of kept ones,
+        each id once."""
+        trials = self.trial, *(kept.trial for kept in self.trials)
+        found: dict[str, AddedLink] = {}
+        for trial in trials:
+            for added in trial.added():
+                found.setdefault(added.link, added)
+        return list(found.values())
+
+    def _check_added(self, added: AddedLink, style: str) -> None:
+        name = f"trial: link {quoted(added.link)}"
+        if added.link in self.links:
+            raise PlanError(f"{name} is there already")
+        for other in self.added_links():
+            ends = (other.source, other.target)
+            if other.link == added.link and ends != (added.source, added.target):
+                raise PlanError(f"{name} is added between other ends by another trial")
+        link = link_of(added)
+        check_link(link, self.nodes.get(link.source), self.nodes.get(link.target), style)
+
     def _check_trial(self, trial: Trial, style: str) -> None:
         for change in trial.changes:
-            if isinstance(change, LinkState | LinkCost):
+            if isinstance(change, AddedLink):
+                self._check_added(change, style)
+            elif isinstance(change, LinkState | LinkCost):
                 link = self.links.get(change.link)
                 if link is None:
                     raise PlanError(f"trial: there is no link {quoted(change.link)}")

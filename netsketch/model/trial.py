@@ -41,12 +41,24 @@ class LinkCost(msgspec.Struct, frozen=True, tag="link cost", tag_field="change")
     cost_back: int
 
 
-TrialChange = LinkState | NodeState | Drained | LinkCost
+class AddedLink(msgspec.Struct, frozen=True, tag="added link", tag_field="change"):
+    """A link that only the trial has, up, with everything a link needs."""
+
+    link: str
+    source: str
+    target: str
+    cost: int
+    cost_back: int
+    capacity_mbps: int | float | None = None
+    delay_ms: int | float | None = None
+
+
+TrialChange = LinkState | NodeState | Drained | LinkCost | AddedLink
 
 
 def subject(change: TrialChange) -> tuple[str, str]:
     """Return what is changed: one trial holds at most one change for each subject."""
-    if isinstance(change, LinkState | LinkCost):
+    if isinstance(change, LinkState | LinkCost | AddedLink):
         return type(change).__name__, change.link
     return type(change).__name__, change.node
 
@@ -80,11 +92,18 @@ class Trial(msgspec.Struct, frozen=True):
 
     def without_things(self, nodes: Iterable[str] = (), links: Iterable[str] = ()) -> Trial:
         """Return a trial without any change to these nodes and links."""
-        nodes, links = set(nodes), set(links)
-        return Trial(
-            tuple(
-                c
-                for c in self.changes
-                if not (c.link in links if isinstance(c, LinkState | LinkCost) else c.node in nodes)
-            )
-        )
+        gone_nodes, gone_links = set(nodes), set(links)
+
+        def stays(change: TrialChange) -> bool:
+            if isinstance(change, AddedLink):
+                ends = {change.source, change.target}
+                return change.link not in gone_links and not ends & gone_nodes
+            if isinstance(change, LinkState | LinkCost):
+                return change.link not in gone_links
+            return change.node not in gone_nodes
+
+        return Trial(tuple(change for change in self.changes if stays(change)))
+
+    def added(self) -> list[AddedLink]:
+        """Return the links that only this trial has."""
+        return [change for change in self.changes if isinstance(change, AddedLink)]

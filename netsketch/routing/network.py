@@ -17,10 +17,13 @@ import numpy.typing as npt
 
 from netsketch.model import (
     Add,
+    AddedLink,
     Change,
     ChangeSettings,
+    ChangeTrial,
     Drained,
     Item,
+    KeptTrial,
     Link,
     LinkCost,
     LinkState,
@@ -33,6 +36,7 @@ from netsketch.model import (
     Trial,
     highest_cost,
 )
+from netsketch.model.items import link_of
 
 Ints = npt.NDArray[np.int32]
 Bools = npt.NDArray[np.bool_]
@@ -181,8 +185,16 @@ class Network:
         s = self.structure
         cost, link_up = self.cost.copy(), self.link_up.copy()
         vertex_up, drained = self.vertex_up.copy(), self.drained.copy()
+        delay, capacity = self.delay, self.capacity
+        if trial.added():
+            delay, capacity = delay.copy(), capacity.copy()
         for change in trial:
-            if isinstance(change, LinkState):
+            if isinstance(change, AddedLink):
+                k = s.link_of[change.link]
+                cost[s.arcs[k]] = change.cost, change.cost_back
+                link_up[k] = True
+                delay[k], capacity[k] = _known(change.delay_ms), _known(change.capacity_mbps)
+            elif isinstance(change, LinkState):
                 link_up[s.link_of[change.link]] = change.up
             elif isinstance(change, LinkCost):
                 cost[s.arcs[s.link_of[change.link]]] = change.cost, change.cost_back
@@ -190,7 +202,10 @@ class Network:
                 drained[s.vertex_of[change.node]] = change.drained
             else:
                 vertex_up[s.vertex_of[change.node]] = change.up
-        return replace(self, cost=cost, link_up=link_up, vertex_up=vertex_up, drained=drained)
+        return replace(
+            self, cost=cost, link_up=link_up, vertex_up=vertex_up, drained=drained, delay=delay,
+            capacity=capacity,
+        )  # fmt: skip
 
     def without_arc(self, arc: int) -> Network:
         """Return this network with one direction of one link carrying nothing."""
@@ -213,7 +228,14 @@ class Network:
             if isinstance(step, Add | Remove):
                 if isinstance(step.item, Router | Segment | Link):
                     return compile_plan(plan)
+                if isinstance(step.item, KeptTrial) and step.item.trial.added():
+                    return compile_plan(plan)
+            elif isinstance(step, ChangeTrial):
+                if step.old.added() or step.new.added():
+                    return compile_plan(plan)
             elif isinstance(step, Change):
+                if isinstance(step.new, KeptTrial) and step.new.trial.added():
+                    return compile_plan(plan)
                 if _carries(step.old) != _carries(step.new):
                     items.append(step.new)
             elif isinstance(step, ChangeSettings) and step.old.cost_style != step.new.cost_style:
@@ -253,11 +275,13 @@ def _known(value: float | None) -> float:
 
 def compile_plan(plan: Plan, trial: Trial | None = None) -> Network:
     """Return the arrays of ``plan`` with ``trial`` laid over it (default: without any).
-    O(items)."""
+    O(items). Links that only trials have are in the structure too, and down."""
     routers, segments = plan.routers(), plan.segments()
     nodes: list[Node] = [*routers, *segments]
     vertex_of = {node.id: index for index, node in enumerate(nodes)}
-    links = list(plan.links)
+    drawn = len(plan.links)
+    added = {each.link: each for each in (*(trial.added() if trial else ()), *plan.added_links())}
+    links = [*plan.links, *map(link_of, added.values())]
     structure = Structure.build(
         [node.id for node in routers],
         [node.id for node in segments],
@@ -270,7 +294,7 @@ def compile_plan(plan: Plan, trial: Trial | None = None) -> Network:
     network = Network(
         structure,
         cost,
-        np.array([link.up for link in links], np.bool_),
+        np.array([link.up for link in links], np.bool_) & (np.arange(len(links)) < drawn),
         np.array([node.up for node in nodes], np.bool_),
         np.array([isinstance(node, Router) and node.drained for node in nodes], np.bool_),
         np.array([_known(link.delay_ms) for link in links], np.float64),

@@ -33,6 +33,8 @@ ENTRIES: tuple[Entry, ...] = (
     Entry("save_as", "File", "Save as…", "Save under another name or in another format",
           "Ctrl+Shift+S"),
     Entry("save_picture", "File", "Save a picture…", "Save the sheet as SVG, PNG or PDF", "Ctrl+P"),
+    Entry("write_record", "File", "Write the record…",
+          "Write what the trial changes as HTML, PDF or Markdown, for a change ticket", "Ctrl+R"),
     Entry("quit", "File", "Quit", "Close the window", "Ctrl+Q"),
     Entry("undo", "Edit", "Undo", "Take the last edit back", "Ctrl+Z"),
     Entry("redo", "Edit", "Redo", "Do the last undone edit again", "Ctrl+Shift+Z"),

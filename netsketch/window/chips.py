@@ -2,11 +2,23 @@
 
 from __future__ import annotations
 
-from netsketch.model import Drained, LinkCost, LinkState, NodeState, Plan, Segment, TrialChange
+from netsketch.model import (
+    AddedLink,
+    Drained,
+    LinkCost,
+    LinkState,
+    NodeState,
+    Plan,
+    Segment,
+    TrialChange,
+)
 
 
 def chip_text(plan: Plan, change: TrialChange) -> str:
     """Return a trial change in a few words: "Quay-1 down", "l4 Quay-1–Gate 10 → 25"."""
+    if isinstance(change, AddedLink):
+        ends = "–".join(plan.nodes[end].label for end in (change.source, change.target))
+        return f"new link {change.link} {ends}"
     if isinstance(change, LinkState):
         return f"{_link(plan, change.link)} {'up' if change.up else 'down'}"
     if isinstance(change, NodeState):

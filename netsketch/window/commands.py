@@ -10,6 +10,7 @@ from netsketch.model import PlanError, Segment, edits
 from netsketch.reports import cautions
 from netsketch.sheet.editors import cost_hint, cost_text, read_costs
 from netsketch.window import actions
+from netsketch.window.record import write_record
 
 if TYPE_CHECKING:
     from netsketch.window.main_window import MainWindow
@@ -26,6 +27,7 @@ def handlers(window: MainWindow) -> dict[str, Callable[[], object]]:
         "save": files.save,
         "save_as": files.save_as,
         "save_picture": files.save_picture,
+        "write_record": partial(write_record, w),
         "quit": window.close,
         "undo": desk.undo,
         "redo": desk.redo,

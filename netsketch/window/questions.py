@@ -10,6 +10,7 @@ SAVE, THROW_AWAY, GO_BACK = "save", "throw away", "go back"
 
 _PLANS = "Plans and graphs (*.json *.graphml *.xml *.gml);;All files (*)"
 _SAVES = "netsketch plan (*.netsketch.json);;GraphML (*.graphml);;GML (*.gml)"
+_RECORDS = "HTML (*.html);;PDF (*.pdf);;Markdown (*.md)"
 _PICTURES = "SVG (*.svg);;PNG (*.png);;PDF (*.pdf)"
 
 
@@ -46,6 +47,10 @@ class Questions:
     def file_for_picture(self, suggested: Path) -> Path | None:
         """Ask where to save a picture of the sheet."""
         return self._save("Save a picture", suggested, _PICTURES, ".svg")
+
+    def file_for_record(self, suggested: Path) -> Path | None:
+        """Ask where to write a change record."""
+        return self._save("Write the record", suggested, _RECORDS, ".html")
 
     def file_for_table(self, suggested: Path) -> Path | None:
         """Ask where to save a table as CSV."""
