@@ -104,24 +104,23 @@ def parting(out: Routes, back: Routes, target: int) -> str | None:
 
 def other_way(routes: Routes, target: int) -> OtherWay | None:
     """Return the best way to vertex ``target`` that begins with a next hop not in use, of
-    those that never come back to the source; ``None`` where there is none.
+    those that never come back to where they were; ``None`` where there is none.
 
     Each candidate (link, router) is its cost plus the router's distance to the target
-    with the source taken out.
+    with the source, and the segment crossed to the router, taken out.
     """
     network, source = routes.network, routes.source
     primary = set(routes.next_hops(target))
     best: tuple[int, list[NextHop]] | None = None
-    up = network.vertex_up.copy()
-    up[source] = False
-    without = replace(network, vertex_up=up)
-    ahead: dict[int, int | None] = {}
-    for hop, cost, head in _first_hops(network, source, target):
+    ahead: dict[tuple[int, int], int | None] = {}
+    for hop, cost, head, across in _first_hops(network, source, target):
         if hop in primary or (network.drained[head] and head != target):
             continue
-        if head not in ahead:
-            ahead[head] = _distance(without, head, target)
-        left = ahead[head]
+        if (head, across) not in ahead:
+            up = network.vertex_up.copy()
+            up[[source, across]] = False
+            ahead[head, across] = _distance(replace(network, vertex_up=up), head, target)
+        left = ahead[head, across]
         if left is None:
             continue
         if best is None or cost + left < best[0]:
@@ -134,8 +133,9 @@ def other_way(routes: Routes, target: int) -> OtherWay | None:
     return OtherWay(tuple(best[1]), best[0], best[0] - own if own is not None else 0)
 
 
-def _first_hops(network: Network, source: int, target: int) -> list[tuple[NextHop, int, int]]:
-    """Return every next hop ``source`` could use: (next hop, cost to it, its vertex)."""
+def _first_hops(network: Network, source: int, target: int) -> list[tuple[NextHop, int, int, int]]:
+    """Return every next hop ``source`` could use: (next hop, cost to it, its vertex, the
+    segment crossed to it, or ``source`` where there is none)."""
     s = network.structure
     found = {}
     for a in range(s.indptr[source], s.indptr[source + 1]):
@@ -143,14 +143,14 @@ def _first_hops(network: Network, source: int, target: int) -> list[tuple[NextHo
             continue
         head, cost, link = int(s.head[a]), int(network.weight[a]), s.link_ids[s.link[a]]
         if head < s.routers:
-            found[NextHop(link, s.vertex_ids[head])] = (cost, head)
+            found[NextHop(link, s.vertex_ids[head])] = (cost, head, source)
         elif head == target:
-            found[NextHop(link, None)] = (cost, head)
+            found[NextHop(link, None)] = (cost, head, source)
         else:
             for b in range(s.indptr[head], s.indptr[head + 1]):
                 beyond = int(s.head[b])
                 if network.weight[b] != BLOCKED and beyond != source:
-                    found[NextHop(link, s.vertex_ids[beyond])] = (cost, beyond)
+                    found[NextHop(link, s.vertex_ids[beyond])] = (cost, beyond, head)
     return [(hop, *values) for hop, values in found.items()]
 
 
