@@ -7,7 +7,16 @@ from collections import Counter
 from collections.abc import Iterable
 from dataclasses import dataclass
 
-from netsketch.model import Drained, LinkCost, LinkState, NodeState, Plan, Router, TrialChange
+from netsketch.model import (
+    AddedLink,
+    Drained,
+    LinkCost,
+    LinkState,
+    NodeState,
+    Plan,
+    Router,
+    TrialChange,
+)
 from netsketch.routing import NextHop
 
 LONGEST = 60
@@ -89,6 +98,8 @@ def way_back(plan: Plan, names: Names) -> tuple[Step, ...]:
 
 
 def _step(plan: Plan, names: Names, change: TrialChange, *, forward: bool) -> Step:
+    if isinstance(change, AddedLink):
+        return _link_step(names, change, forward)
     if isinstance(change, LinkCost):
         return _cost_step(plan, names, change, forward)
     if isinstance(change, LinkState):
@@ -112,6 +123,15 @@ _ACTIONS = {
     "drained": "Drain {what}",
     "in service": "Return {what} to service",
 }
+
+
+def _link_step(names: Names, change: AddedLink, forward: bool) -> Step:
+    ends = names.node(change.source), names.node(change.target)
+    costs = f"cost {change.cost} from {ends[0]}, {change.cost_back} from {ends[1]}"
+    what = f"link {shown(change.link)} from {ends[0]} to {ends[1]}"
+    if forward:
+        return Step(f"Bring new {what} into service", "not there", costs)
+    return Step(f"Take {what} out again", costs, "not there")
 
 
 def _drained_states(plan: Plan, change: Drained) -> tuple[str, str]:

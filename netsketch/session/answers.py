@@ -232,7 +232,7 @@ class Answers:
             )
             for a in sink.arcs
         ]  # fmt: skip
-        reading = inward_reading.inward(sink, counts, self._label(node))
+        reading = inward_reading.inward(sink, counts, mbps, self._label(node))
         return Inward(reading, inward_table(sink), sorted(links, key=lambda row: -row[3]))
 
     def tipping_task(self, link: str) -> Callable[[Callable[[], bool]], tuple[Tipping, Tipping]]:

@@ -65,6 +65,7 @@ ENTRIES: tuple[Entry, ...] = (
           "Set every cost of leaving the selected router to the highest (RFC 6987)", "Shift+D"),
     Entry("try_cost", "Trial", "Try a cost…", "Give the selected link another cost in the trial",
           "T"),
+    Entry("try_link", "Trial", "Try a link", "Join what is selected in the trial", "Shift+T"),
     Entry("adopt", "Trial", "Adopt", "Make the trial the plan", "Ctrl+Return"),
     Entry("discard", "Trial", "Discard", "Drop every change of the trial", "Ctrl+Backspace"),
     Entry("keep_trial", "Trial", "Keep as…", "Put the trial by under a name", "K"),

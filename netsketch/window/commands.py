@@ -6,7 +6,7 @@ from collections.abc import Callable
 from functools import partial
 from typing import TYPE_CHECKING
 
-from netsketch.model import PlanError, Segment, edits
+from netsketch.model import PlanError, Segment, edits, quoted
 from netsketch.reports import cautions
 from netsketch.sheet.editors import cost_hint, cost_text, read_costs
 from netsketch.window import actions
@@ -44,6 +44,7 @@ def handlers(window: MainWindow) -> dict[str, Callable[[], object]]:
         "toggle_drained": partial(_toggle_drained, w),
         "drain_by_cost": partial(_drain_by_cost, w),
         "try_cost": partial(_try_cost, w),
+        "try_link": partial(_try_link, w),
         "keep_trial": partial(_keep_trial, w),
         "adopt": lambda: desk.apply(edits.adopt(desk.document.plan)),
         "discard": lambda: desk.apply(edits.discard(desk.document.plan)),
@@ -96,6 +97,26 @@ def _drain_by_cost(window: MainWindow) -> None:
         window.hint("Only routers can be drained")
         return
     window.desk.apply(edits.drain_by_cost(window.desk.document.plan, node))
+
+
+def _try_link(window: MainWindow) -> None:
+    plan, nodes = window.desk.document.plan, window.sheet.selected_nodes
+    if all(isinstance(plan.nodes[key], Segment) for key in nodes):
+        window.hint("A link joins two routers, or a router and a segment")
+        return
+    text = window.ask.text("Try a link", "Cost, the same both ways", "10")
+    if text is None:
+        return
+    try:
+        window.desk.apply(edits.try_link(plan, nodes[0], nodes[1], _whole(text)))
+    except PlanError as error:
+        window.hint(str(error))
+
+
+def _whole(text: str) -> int:
+    if not text.strip().isdecimal() or len(text) > 15:
+        raise PlanError(f"cost {quoted(text)} is not a whole number")
+    return int(text)
 
 
 def _keep_trial(window: MainWindow) -> None:

@@ -120,8 +120,7 @@ class LedgerModel(QAbstractTableModel):
         chosen = np.flatnonzero(keep)
         column, backwards = self._order
         key = self._key(ledger, column)[chosen]
-        order = np.argsort(-key if backwards else key, kind="stable")
-        self._chosen = chosen[order]
+        self._chosen = chosen[np.argsort(-key if backwards else key, kind="stable")]
 
     def _key(self, ledger: Ledger, column: int) -> npt.NDArray[Any]:
         keys: tuple[npt.NDArray[Any], ...] = (

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import time
 from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -30,7 +31,7 @@ from netsketch.window.questions import Questions
 if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
 
-ROWS_AT_ONCE = 400
+ROWS_AT_ONCE, SECONDS_AT_ONCE = 20, 0.015
 MOST_COPIED = 100_000
 _WIDTHS = (140, 140, 96, 90, 86, 64, 72, 240, 240)
 
@@ -196,10 +197,11 @@ class _CsvWriter(QTimer):
         super().start()
 
     def _step(self) -> None:
-        rows = self._panel.model.csv_rows(self._next, self._next + ROWS_AT_ONCE)
-        text = csv_text((), rows)
-        self._parts.append(text.removeprefix("\r\n"))
-        self._next += ROWS_AT_ONCE
+        start = time.perf_counter()
+        while self._next < self._rows and time.perf_counter() - start < SECONDS_AT_ONCE:
+            rows = self._panel.model.csv_rows(self._next, self._next + ROWS_AT_ONCE)
+            self._parts.append(csv_text((), rows).removeprefix("\r\n"))
+            self._next += ROWS_AT_ONCE
         if self._next < self._rows:
             self._panel.hint.emit(f"Writing CSV: {self._next:,} of {self._rows:,} rows")
             return

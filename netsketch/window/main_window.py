@@ -191,7 +191,7 @@ class MainWindow(QMainWindow):
     def _show_selection(self) -> None:
         chosen = self.sheet.selected_nodes, self.sheet.selected_links
         if self._is_pair(*chosen):
-            self.desk.set_pair(*chosen[0])
+            self.desk.set_pair(*chosen[0])  # comes back here
             return
         self.inspector.show_focus(self.desk.focus, chosen)
         several = len(chosen[0]) + len(chosen[1])
@@ -199,6 +199,7 @@ class MainWindow(QMainWindow):
             self.actions_by_id[key].setEnabled(several > 0)
         self.actions_by_id["set_cost"].setEnabled(len(chosen[1]) > 0)
         self.actions_by_id["try_cost"].setEnabled(len(chosen[1]) == 1)
+        self.actions_by_id["try_link"].setEnabled(len(chosen[0]) == 2 and not chosen[1])
         for key in ("rename", "toggle_drained", "drain_by_cost"):
             self.actions_by_id[key].setEnabled(len(chosen[0]) > 0)
 
