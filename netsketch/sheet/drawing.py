@@ -1,7 +1,7 @@
 """The drawing: listens to a document and keeps the frame that shows it.
 
-It changes nothing. Moves lay the lines anew; every other change of the plan reads it
-anew, at the next painting.
+It changes nothing. What edits touched, and a new reading, are taken in all at once when
+the frame is next wanted: several changes in one turn of the event loop cost one.
 """
 
 from __future__ import annotations
@@ -13,10 +13,21 @@ from typing import Protocol
 import numpy as np
 from PySide6.QtCore import QRectF
 
-from netsketch.model import Change, ChangeSet, Plan, Router, Segment, Step
+from netsketch.model import (
+    Change,
+    ChangeSet,
+    ChangeSettings,
+    ChangeTrial,
+    Link,
+    Plan,
+    Router,
+    Segment,
+    Step,
+)
+from netsketch.model.trial import subject
 from netsketch.readings.reading import Reading
 from netsketch.sheet.contents import Flags, Floats, unit_for
-from netsketch.sheet.frame import Frame, frame_of, relaid, with_reading
+from netsketch.sheet.frame import Frame, edited, frame_of, relaid, with_reading
 from netsketch.sheet.lettering import Lettering
 from netsketch.sheet.look import LIGHT, Look
 
@@ -49,6 +60,7 @@ class Drawing:
         self._changing = changing
         self._unsubscribe: Callable[[], None] = lambda: None
         self._frame: Frame | None = None
+        self._touched: set[str] = set()
         self._lifted: tuple[Flags, Flags] | None = None
         self._home: tuple[Floats, Floats] | None = None
 
@@ -62,6 +74,7 @@ class Drawing:
             self._unsubscribe = document.subscribe(self._on_change)
         self.unit = unit_for(self.plan)
         self._frame = self._lifted = self._home = None
+        self._touched.clear()
         self._touch()
 
     def set_reading(self, reading: Reading | None, look: Look) -> None:
@@ -69,8 +82,6 @@ class Drawing:
         if reading is self.reading and look is self.look:
             return
         self.reading, self.look = reading, look
-        if self._frame is not None:
-            self._frame = with_reading(self._frame, reading, look)
         self._touch()
 
     @property
@@ -78,6 +89,10 @@ class Drawing:
         """The whole drawing at scale 1."""
         if self._frame is None:
             self._frame = frame_of(self.plan, self.reading, self.look, self.lettering, self.unit)
+        if self._touched:
+            self._frame = edited(self._frame, self.plan, self._touched)
+            self._touched.clear()
+        self._frame = with_reading(self._frame, self.reading, self.look)
         return self._frame
 
     def resting(self, scale: float, still: bool) -> Frame:
@@ -115,13 +130,16 @@ class Drawing:
 
     def drop(self) -> None:
         """Set what was lifted back on the sheet, where it was."""
-        if self._lifted is None or self._frame is None or self._home is None:
-            return
-        nodes = self._frame.contents.nodes
-        nodes.x[:], nodes.y[:] = self._home
-        self._frame = relaid(self._frame)
+        if self._lifted is not None:
+            self._put_back()
+            self._touch()
+
+    def _put_back(self) -> None:
+        if self._frame is not None and self._home is not None:
+            nodes = self._frame.contents.nodes
+            nodes.x[:], nodes.y[:] = self._home
+            self._frame = relaid(self._frame)
         self._lifted = self._home = None
-        self._touch()
 
     def extent(self) -> QRectF:
         """Return the rectangle around everything drawn."""
@@ -140,27 +158,17 @@ class Drawing:
 
     def _on_change(self, changes: ChangeSet) -> None:
         self._changing()
-        frame = self._frame
-        moves = [move for move in map(_moved, changes.steps) if move is not None]
-        if frame is not None and len(moves) == len(changes.steps):
-            nodes = frame.contents.nodes
-            for key, x, y in moves:
-                row = nodes.row[key]
-                nodes.x[row], nodes.y[row] = x * self.unit, y * self.unit
-            self._frame = relaid(frame)
-        else:
-            self._frame = None
-        self._lifted = self._home = None
+        self._put_back()
+        for step in changes.steps:
+            self._touched.update(_touched(step))
         self._touch()
 
 
-def _moved(step: Step) -> tuple[str, float, float] | None:
-    """Return a node's id and new place, if all that the step does is move it."""
-    if not isinstance(step, Change) or not isinstance(step.new, Router | Segment):
-        return None
-    old, new = step.old, step.new
-    if not isinstance(old, Router | Segment) or new.x is None or new.y is None:
-        return None
-    same = (old.name, old.site, old.up) == (new.name, new.site, new.up)
-    same &= getattr(old, "drained", False) == getattr(new, "drained", False)
-    return (new.id, new.x, new.y) if same else None
+def _touched(step: Step) -> set[str]:
+    """Return the ids of the nodes and links that a step makes look different."""
+    if isinstance(step, ChangeTrial):
+        return {key for trial in (step.old, step.new) for _, key in map(subject, trial)}
+    if isinstance(step, ChangeSettings):
+        return set()
+    item = step.new if isinstance(step, Change) else step.item
+    return {item.id} if isinstance(item, Router | Segment | Link) else set()

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Set
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -9,12 +10,13 @@ from PySide6.QtCore import QRectF
 
 from netsketch.model import Plan
 from netsketch.readings.reading import Reading
-from netsketch.sheet.contents import Contents, Flags, Floats, contents_of
+from netsketch.sheet.contents import Contents, Flags, Floats
 from netsketch.sheet.lettering import Lettering
 from netsketch.sheet.lines import Lines, lines_of
 from netsketch.sheet.look import Look
 from netsketch.sheet.marks import Marks, marks_of
-from netsketch.sheet.tags import Tags, place_tags, tags_of
+from netsketch.sheet.rows import brought_up, contents_of
+from netsketch.sheet.tags import Tags, place_tags, retold, tags_of
 
 BAND_ROOM = 18.0
 """Below a plate, for its band."""
@@ -26,8 +28,7 @@ class Frame:
     """One state of the sheet, ready to paint.
 
     ``scale``: pixels for one sheet unit, which decides the level of detail.
-    ``nodes``, ``links``: what to paint of it; ``still``: paint at full quality;
-    ``told``: the tags hold texts of the reading.
+    ``nodes``, ``links``: what to paint of it; ``still``: paint at full quality.
     """
 
     contents: Contents
@@ -35,6 +36,7 @@ class Frame:
     tags: Tags
     tag_boxes: Floats
     tag_fits: Flags
+    reading: Reading | None
     marks: Marks | None
     look: Look
     lettering: Lettering
@@ -42,7 +44,6 @@ class Frame:
     nodes: Flags
     links: Flags
     still: bool = True
-    told: bool = False
 
     def only(self, nodes: Flags, links: Flags) -> Frame:
         """Return this frame with these nodes and links alone."""
@@ -55,10 +56,11 @@ class Frame:
         low = np.minimum(self.lines.boxes[:, :2], self.lines.bars[:, :2]) - room
         high = np.maximum(self.lines.boxes[:, 2:], self.lines.bars[:, 2:]) + room
         high[:, 1] += BAND_ROOM
-        nodes = (low <= (right, bottom)).all(axis=1) & (high >= (left, top)).all(axis=1)
+        nodes = (low[:, 0] <= right) & (low[:, 1] <= bottom)
+        nodes &= (high[:, 0] >= left) & (high[:, 1] >= top)
         e = self.lines.extents
-        links = (e[:, :2] - room <= (right, bottom)).all(axis=1)
-        links &= (e[:, 2:] + room >= (left, top)).all(axis=1)
+        links = (e[:, 0] - room <= right) & (e[:, 1] - room <= bottom)
+        links &= (e[:, 2] + room >= left) & (e[:, 3] + room >= top)
         return self.only(self.nodes & nodes, self.links & links)
 
     def extent(self) -> QRectF:
@@ -80,22 +82,22 @@ def frame_of(
 ) -> Frame:
     """Return a whole plan with a reading as a frame at scale 1."""
     contents = contents_of(plan, lettering, unit)
-    frame = Frame(
+    lines, tags = lines_of(contents), tags_of(contents, lettering, reading)
+    boxes, fits = place_tags(tags, lines, contents)
+    return Frame(
         contents=contents,
-        lines=lines_of(contents),
-        tags=tags_of(contents, lettering, reading),
-        tag_boxes=np.empty((0, 4)),
-        tag_fits=np.empty(0, dtype=bool),
+        lines=lines,
+        tags=tags,
+        tag_boxes=boxes,
+        tag_fits=fits,
+        reading=reading,
         marks=None if reading is None else marks_of(reading, contents, look),
         look=look,
         lettering=lettering,
         scale=1.0,
         nodes=np.ones(len(contents.nodes.ids), dtype=bool),
         links=np.ones(len(contents.links.ids), dtype=bool),
-        told=_told(reading),
     )
-    frame.tag_boxes, frame.tag_fits = place_tags(frame.tags, frame.lines, contents)
-    return frame
 
 
 def relaid(frame: Frame) -> Frame:
@@ -105,19 +107,47 @@ def relaid(frame: Frame) -> Frame:
     return replace(frame, lines=lines, tag_boxes=boxes, tag_fits=fits)
 
 
+def edited(frame: Frame, plan: Plan, touched: Set[str]) -> Frame:
+    """Return the frame after an edit of these nodes and links; it takes over what the
+    edit left alone, so a small one costs little. Equal to the plan read anew."""
+    before, lettering, reading = frame.contents, frame.lettering, frame.reading
+    contents, source = brought_up(before, plan, lettering, touched)
+    fresh = tags_of(contents, lettering, reading, np.flatnonzero(source < 0))
+    same_rows = contents.nodes.ids == before.nodes.ids and contents.links.ids == before.links.ids
+    marks = frame.marks
+    if reading is not None and not same_rows:
+        marks = marks_of(reading, contents, frame.look)
+    lines = frame.lines if contents.lies_like(before) else lines_of(contents)
+    tags = retold(frame.tags, source, fresh)
+    boxes, fits = place_tags(tags, lines, contents)
+    return replace(
+        frame,
+        contents=contents,
+        lines=lines,
+        tags=tags,
+        tag_boxes=boxes,
+        tag_fits=fits,
+        marks=marks,
+        nodes=np.ones(len(contents.nodes.ids), dtype=bool),
+        links=np.ones(len(contents.links.ids), dtype=bool),
+    )
+
+
 def with_reading(frame: Frame, reading: Reading | None, look: Look) -> Frame:
     """Return the frame with another reading or look."""
-    was_told = frame.told
+    if reading is frame.reading and look is frame.look:
+        return frame
+    retell = _tells(reading) or _tells(frame.reading)
     marks = None if reading is None else marks_of(reading, frame.contents, look)
-    frame = replace(frame, marks=marks, look=look, told=_told(reading))
-    if frame.told or was_told:
+    frame = replace(frame, reading=reading, marks=marks, look=look)
+    if retell:
         frame.tags = tags_of(frame.contents, frame.lettering, reading)
         placed = place_tags(frame.tags, frame.lines, frame.contents)
         frame.tag_boxes, frame.tag_fits = placed
     return frame
 
 
-def _told(reading: Reading | None) -> bool:
+def _tells(reading: Reading | None) -> bool:
     """Return whether the reading puts texts of its own into tags."""
     return reading is not None and any(mark.text for mark in reading.links.values())
 

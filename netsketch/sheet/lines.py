@@ -57,9 +57,8 @@ def lines_of(contents: Contents) -> Lines:
         along=along,
         across=np.stack([-along[:, 1], along[:, 0]], axis=1),
         length=length,
-        bent=(points[:, 0] != points[:, 1]).any(axis=1)
-        | (points[:, 2] != points[:, 3]).any(axis=1),
-        extents=np.concatenate([points.min(axis=1), points.max(axis=1)], axis=1),
+        bent=_differ(points[:, 0], points[:, 1]) | _differ(points[:, 2], points[:, 3]),
+        extents=_extents(points),
     )
 
 
@@ -96,8 +95,8 @@ def _straight(nodes: Nodes, links: Links) -> Floats:
     first, second = _leave(nodes.sizes[links.tail] / 2, along, across, links.lane * _LANE)
     fourth, third = _leave(nodes.sizes[links.head] / 2, -along, across, links.lane * _LANE)
     points = np.stack([tail + first, tail + second, head + third, head + fourth], axis=1)
-    body = ((points[:, 2] - points[:, 1]) * along).sum(axis=1)
-    hidden = body <= 0
+    body = (points[:, 2] - points[:, 1]) * along
+    hidden = body[:, 0] + body[:, 1] <= 0
     points[hidden] = ((tail + head) / 2)[hidden, None, :]
     return points
 
@@ -105,13 +104,27 @@ def _straight(nodes: Nodes, links: Links) -> Floats:
 def _leave(half: Floats, along: Floats, across: Floats, aside: Floats) -> tuple[Floats, Floats]:
     """Return where a line leaves a box around the origin, and its knee: the same point
     unless its lane lies farther out than the box is wide."""
-    room = (half / np.maximum(np.abs(across), 1e-9)).min(axis=1)
+    room = _lesser(half / np.maximum(np.abs(across), 1e-9))
     inner = np.clip(aside, -0.75 * room, 0.75 * room)
     start = across * inner[:, None]
     reach = (half - start * np.sign(along)) / np.maximum(np.abs(along), 1e-9)
-    out = start + along * reach.min(axis=1)[:, None]
+    out = start + along * _lesser(reach)[:, None]
     knee = out + across * (aside - inner)[:, None] + along * (np.abs(aside - inner) * 0.9)[:, None]
     return out, knee
+
+
+def _differ(one: Floats, other: Floats) -> Flags:
+    return np.asarray((one != other)[:, 0] | (one != other)[:, 1])
+
+
+def _extents(points: Floats) -> Floats:
+    corners = points.transpose(1, 0, 2).copy()
+    return np.concatenate([corners.min(axis=0), corners.max(axis=0)], axis=1)
+
+
+def _lesser(pairs: Floats) -> Floats:
+    """Return the lesser of each pair (k, 2); numpy's own ``min`` is slow along so few."""
+    return np.minimum(pairs[:, 0], pairs[:, 1])
 
 
 def _drop(nodes: Nodes, links: Links, bars: Floats, row: int) -> Floats:

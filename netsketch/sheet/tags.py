@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from dataclasses import dataclass
 
 import numpy as np
@@ -31,36 +32,66 @@ class Tags:
     tried: Flags
 
 
-def tags_of(contents: Contents, lettering: Lettering, reading: Reading | None) -> Tags:
-    """Return a tag for each link, or two where its directions differ in cost."""
-    rows, spots, texts = [], [], []
+def tags_of(
+    contents: Contents, lettering: Lettering, reading: Reading | None, rows: Rows | None = None
+) -> Tags:
+    """Return a tag for each link, or two where its directions differ in cost; only for
+    the links ``rows`` where these are given."""
+    links = contents.links
+    rows = np.arange(len(links.ids)) if rows is None else rows
     marks = reading.links if reading else {}
-    for row, key in enumerate(contents.links.ids):
-        mark = marks.get(key)
-        told = _costs(contents, row)
+    one_way = contents.nodes.segment[links.tail[rows]].tolist()
+    other_way = contents.nodes.segment[links.head[rows]].tolist()
+    costs, planned = links.costs[rows].tolist(), links.planned[rows].tolist()
+    found: list[tuple[int, int, str]] = []
+    for row, *told in zip(rows.tolist(), costs, planned, one_way, other_way, strict=True):
+        mark = marks.get(links.ids[row])
         if mark is not None and mark.text:
-            told = [(_MIDDLE, mark.text)]
-        for spot, text in told:
-            rows.append(row)
-            spots.append(spot)
-            texts.append(text)
-    fitted = [lettering.tag.fitted(text, 140.0) for text in texts]
+            found.append((row, _MIDDLE, mark.text))
+        else:
+            found += [(row, spot, text) for spot, text in _costs(*told)]
+    fitted = [lettering.tag.fitted(text, 140.0) for _, _, text in found]
+    link = np.array([row for row, _, _ in found], dtype=np.intp)
     return Tags(
-        link=np.array(rows, dtype=np.intp),
-        spot=np.array(spots, dtype=np.intp),
+        link=link,
+        spot=np.array([spot for _, spot, _ in found], dtype=np.intp),
         width=np.array([width + 8 for _, width in fitted], dtype=float),
         texts=[text for text, _ in fitted],
-        tried=contents.links.tried[np.array(rows, dtype=np.intp)],
+        tried=links.tried[link],
     )
 
 
-def _costs(contents: Contents, row: int) -> list[tuple[int, str]]:
-    links, segment = contents.links, contents.nodes.segment
-    cost, back = links.costs[row]
-    old, old_back = links.planned.get(row, (cost, back))
-    if segment[links.tail[row]]:
+def retold(tags: Tags, source: Rows, fresh: Tags) -> Tags:
+    """Return ``tags`` after links changed: ``source`` (m,) holds the row each link had, -1
+    for those whose tags are the ``fresh`` ones."""
+    now = np.full(max(tags.link.max(initial=-1), source.max(initial=-1)) + 1, -1, dtype=np.intp)
+    kept_links = np.flatnonzero(source >= 0)
+    now[source[kept_links]] = kept_links
+    kept = now[tags.link] >= 0
+    link = np.concatenate([now[tags.link[kept]], fresh.link])
+    order = np.argsort(link, kind="stable")
+
+    def merged(old: np.ndarray, new: np.ndarray) -> np.ndarray:
+        return np.concatenate([old[kept], new])[order]
+
+    texts = [*itertools.compress(tags.texts, kept.tolist()), *fresh.texts]
+    return Tags(
+        link=link[order],
+        spot=merged(tags.spot, fresh.spot),
+        width=merged(tags.width, fresh.width),
+        texts=[texts[row] for row in order.tolist()],
+        tried=merged(tags.tried, fresh.tried),
+    )
+
+
+def _costs(
+    costs: list[int], planned: list[int], from_segment: bool, to_segment: bool
+) -> list[tuple[int, str]]:
+    """Return the spots and texts of a link's costs; leaving a segment costs nothing."""
+    (cost, back), (old, old_back) = costs, planned
+    if from_segment:
         return [(_MIDDLE, _changed(old_back, back))]
-    if segment[links.head[row]] or (cost == back and old == old_back):
+    if to_segment or (cost == back and old == old_back):
         return [(_MIDDLE, _changed(old, cost))]
     return [(_AT_TAIL, _changed(old, cost)), (_AT_HEAD, _changed(old_back, back))]
 
@@ -105,10 +136,12 @@ def _nearest(
     room = np.stack([tags.width, np.full(len(node), TAG_HEIGHT)], axis=1) / 2 + _CLEAR
     ahead = np.where(out > 0, boxes[:, 2:] - start, start - boxes[:, :2])
     ahead[:, 1] += np.where((out[:, 1] > 0) & ~contents.nodes.segment[node], _BAND_ROOM, 0.0)
-    clear = ((np.maximum(ahead, 0) + room) / np.maximum(np.abs(out), 1e-6)).min(axis=1)
-    touching = (start >= boxes[:, :2] - 1).all(axis=1) & (start <= boxes[:, 2:] + 1).all(axis=1)
-    reach = (np.abs(out) * room).sum(axis=1)
-    return np.asarray(np.where(touching, clear, reach))
+    clear = (np.maximum(ahead, 0) + room) / np.maximum(np.abs(out), 1e-6)
+    touching = (start >= boxes[:, :2] - 1) & (start <= boxes[:, 2:] + 1)
+    reach = np.abs(out) * room
+    # numpy reduces rows of two slowly; column by column is several times faster
+    nearest = np.minimum(clear[:, 0], clear[:, 1])
+    return np.where(touching[:, 0] & touching[:, 1], nearest, reach[:, 0] + reach[:, 1])
 
 
 def _both(tags: Tags, fits: Flags) -> Flags:
