@@ -34,10 +34,12 @@ def link_at(frame: Frame, at: QPointF) -> int | None:
     if frame.scale >= READABLE:
         boxes = frame.tag_boxes
         on = ((boxes[:, :2] <= point) & (point <= boxes[:, 2:])).all(axis=1) & frame.tag_fits
+        on &= ~frame.contents.links.added[frame.tags.link]
         if on.any():
             return int(frame.tags.link[np.flatnonzero(on)[-1]])
     room = _NEAR / frame.scale + (0.0 if frame.marks is None else frame.marks.reach)
     distance = distances(frame.lines.points, point) - room
+    distance[frame.contents.links.added] = np.inf
     row = int(distance.argmin())
     return row if distance[row] <= 0 else None
 
@@ -64,4 +66,4 @@ def rows_in(frame: Frame, area: QRectF) -> tuple[Rows, Rows]:
         )
     e = frame.lines.extents
     within = (e[:, 0] >= left) & (e[:, 1] >= top) & (e[:, 2] <= right) & (e[:, 3] <= bottom)
-    return np.flatnonzero(touched), np.flatnonzero(within)
+    return np.flatnonzero(touched), np.flatnonzero(within & ~frame.contents.links.added)

@@ -35,7 +35,7 @@ class Answering:
     def file_to_save(self, suggested: Path) -> Path | None:
         return self.path
 
-    file_for_picture = file_for_table = file_to_save
+    file_for_picture = file_for_record = file_for_table = file_to_save
 
     def text(self, title: str, label: str, value: str) -> str | None:
         return self.line

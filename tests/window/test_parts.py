@@ -313,3 +313,26 @@ def test_the_ledger_filters_by_extra_cost_and_delay(harbour: Person, qtbot: QtBo
     qtbot.keyClicks(panel.least_delay, "0.1")
     delay = ledger.delay_after - ledger.delay_before
     assert panel.model.rowCount() == int((delay >= 0.1).sum()) > 0
+
+
+def test_a_link_tried_between_two_routers(harbour: Person, qtbot: QtBot) -> None:
+    ends = find(harbour, "Rail-1"), find(harbour, "Quay-1")
+    harbour.click(harbour.at(ends[0]))
+    harbour.click(harbour.at(ends[1]), Qt.KeyboardModifier.ShiftModifier)
+    harbour.ask.line = "none"
+    harbour.do("try_link")
+    assert "is not a whole number" in harbour.window.statusBar().currentMessage()
+    harbour.ask.line = "5"
+    harbour.do("try_link")
+    harbour.settle()
+    added = harbour.plan.trial.added()[0]
+    assert (added.source, added.target, added.cost) == (*ends, 5)
+    assert added.link not in harbour.plan.links
+    assert harbour.window.sheet.middle_of(added.link) is not None, "it is drawn"
+    assert harbour.window.desk.ledger is not None
+    assert harbour.window.desk.ledger.moved > 0
+    harbour.click(harbour.at(added.link))
+    assert harbour.window.sheet.selected_links == [], "it is the trial's, not the plan's, to edit"
+    assert len(named(harbour.window.strip, "Take out: new link")) == 1
+    harbour.do("adopt")
+    assert harbour.plan.links[added.link].ends == ends
