@@ -16,7 +16,7 @@ from netsketch.reports.record_words import shown
 PAGE_PICTURE = "picture:{}"
 """Name under which a picture stands in the pages that are printed."""
 
-_ID = re.compile(r'( id="|url\(#)(?=(?:patternmask|fillpattern|gradient))')
+_ID = re.compile(r' id="([^"]+)"')
 
 
 def html(record: Record) -> str:
@@ -37,7 +37,12 @@ def print_html(record: Record) -> str:
 def inline_svg(svg: str, prefix: str) -> str:
     """Return a picture as an element of HTML: without the XML declaration, its ids told
     apart from those of other pictures by ``prefix``."""
-    return _ID.sub(rf"\1{prefix}", svg[svg.index("<svg") :])
+    text = svg[svg.index("<svg") :]
+    definitions = text[: text.find("</defs>")]
+    for key in dict.fromkeys(_ID.findall(definitions)):
+        text = text.replace(f' id="{key}"', f' id="{prefix}{key}"')
+        text = text.replace(f"url(#{key})", f"url(#{prefix}{key})")
+    return text
 
 
 def _rendered(record: Record, style: str, pictures: list[Markup]) -> str:

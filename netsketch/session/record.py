@@ -115,9 +115,15 @@ def origin(plan: Plan, file: Path | None, now: datetime) -> Origin:
     if file is None:
         return Origin("", "", True, __version__, written)
     filed = formats.read(file).plan
-    as_filed = _without_trial(filed) == _without_trial(plan)
+    as_filed = _routed(filed) == _routed(plan)
     checksum = hashlib.sha256(file.read_bytes()).hexdigest()
     return Origin(file.name, checksum, as_filed, __version__, written)
+
+
+def _routed(plan: Plan) -> tuple[object, ...]:
+    """Return what a record depends on: neither places on the sheet nor trials."""
+    nodes = [edits.replace(node, x=None, y=None) for node in plan.nodes]
+    return plan.settings, nodes, plan.links, plan.groups, plan.demands
 
 
 def _without_trial(plan: Plan) -> Plan:

@@ -1,9 +1,16 @@
-"""A record laid out on pages as PDF."""
+"""A record laid out on pages as PDF.
+
+``python -m netsketch.sheet.print`` does it in a process of its own: it reads the record as
+JSON and writes the PDF. Qt holds the interpreter's lock for as long as it lays a document
+out or reads a picture, up to seconds, and no window moves meanwhile.
+"""
 
 from __future__ import annotations
 
 import re
+import sys
 
+import msgspec
 from PySide6.QtCore import (
     QBuffer,
     QByteArray,
@@ -168,3 +175,7 @@ def _font(pixels: int) -> QFont:
     font.setPixelSize(pixels)
     font.setHintingPreference(QFont.HintingPreference.PreferNoHinting)
     return font
+
+
+if __name__ == "__main__":
+    sys.stdout.buffer.write(pdf(msgspec.json.decode(sys.stdin.buffer.read(), type=Record)))

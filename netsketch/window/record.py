@@ -8,6 +8,7 @@ import sys
 from collections.abc import Callable
 from functools import partial
 from pathlib import Path
+from tempfile import TemporaryFile
 from typing import TYPE_CHECKING, Any
 
 import msgspec
@@ -68,32 +69,38 @@ def printed_apart(record: Record, cancelled: Callable[[], bool]) -> bytes:
     """Return the record as PDF, laid out in a process of its own: see
     :mod:`netsketch.sheet.print`. Raises :class:`~netsketch.routing.Cancelled`, and
     ``OSError`` when that process fails."""
-    from netsketch.routing import Cancelled
-
     command = [sys.executable, "-m", "netsketch.sheet.print"]
     paths = os.pathsep.join(path for path in sys.path if path)
-    with subprocess.Popen(
-        command,
-        stdin=subprocess.PIPE,
-        stdout=subprocess.PIPE,
-        stderr=subprocess.PIPE,
-        env={**os.environ, "PYTHONPATH": paths},
-        creationflags=getattr(subprocess, "CREATE_NO_WINDOW", 0),
-    ) as child:
-        told: bytes | None = msgspec.json.encode(record)
-        while True:
-            try:
-                pages, complaint = child.communicate(told, timeout=LOOK_UP_SECONDS)
-                break
-            except subprocess.TimeoutExpired:
-                told = None  # all of it is on its way
-            if cancelled():
-                child.kill()
-                raise Cancelled
+    with TemporaryFile() as told:
+        told.write(msgspec.json.encode(record))
+        told.seek(0)
+        child = subprocess.Popen(
+            command,
+            stdin=told,
+            stdout=subprocess.PIPE,
+            stderr=subprocess.PIPE,
+            env={**os.environ, "PYTHONPATH": paths},
+            creationflags=getattr(subprocess, "CREATE_NO_WINDOW", 0),
+        )
+    with child:
+        pages, complaint = _outcome(child, cancelled)
     if child.returncode:
         last = complaint.decode(errors="replace").strip().rpartition("\n")[2]
         raise OSError(f"the pages could not be laid out: {last}")
     return pages
+
+
+def _outcome(child: subprocess.Popen[bytes], cancelled: Callable[[], bool]) -> tuple[bytes, bytes]:
+    """Wait for the process; return what it wrote to standard output and standard error."""
+    from netsketch.routing import Cancelled
+
+    while True:
+        try:
+            return child.communicate(timeout=LOOK_UP_SECONDS)
+        except subprocess.TimeoutExpired:
+            if cancelled():
+                child.kill()
+                raise Cancelled from None
 
 
 def _written(window: MainWindow, out: Path, result: Any) -> None:
