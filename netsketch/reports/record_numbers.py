@@ -9,7 +9,7 @@ from dataclasses import dataclass
 import numpy as np
 import numpy.typing as npt
 
-from netsketch.analysis import Ledger, failures_of, survey
+from netsketch.analysis import Failure, Ledger, failures_of, survey
 from netsketch.analysis.load import load_of
 from netsketch.model import Plan
 from netsketch.reports.record_words import Names
@@ -100,6 +100,8 @@ def single_points(
     found = []
     for kind in SURVEYED:
         failed = failures_of(plan, kind)
+        if kind == "links":
+            failed += [Failure((new.link,), links=(new.link,)) for new in plan.trial.added()]
         was = survey(before, kind, failed, cancelled=cancelled).cut_off
         now = survey(after, kind, failed, cancelled=cancelled).cut_off
         found += [

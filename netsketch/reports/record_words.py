@@ -43,7 +43,8 @@ def shown(text: str) -> str:
 
 
 class Names:
-    """The names of a plan's things in a record: a label that two share gets the id too."""
+    """The names of a plan's things in a record, and of the links its trial adds: a label that
+    two share gets the id too."""
 
     def __init__(self, plan: Plan) -> None:
         self._plan = plan
@@ -53,6 +54,8 @@ class Names:
             key: label if shared[label] == 1 else f"{label} ({shown(key)})"
             for key, label in labels.items()
         }
+        self._ends = {link.id: link.ends for link in plan.links}
+        self._ends.update({new.link: (new.source, new.target) for new in plan.trial.added()})
 
     def node(self, key: str) -> str:
         """Return "Quay-1", or "Quay-1 (r1)" where another has that name."""
@@ -60,7 +63,7 @@ class Names:
 
     def link(self, key: str) -> str:
         """Return "l4 (Quay-1 – Gate)"."""
-        ends = " – ".join(self.node(end) for end in self._plan.links[key].ends)
+        ends = " – ".join(self.node(end) for end in self._ends[key])
         return f"{shown(key)} ({ends})"
 
     def group(self, key: str) -> str:
