@@ -1,4 +1,8 @@
-"""The resting sheet kept as a picture: panning moves it and paints only what comes in."""
+"""The resting sheet kept as a picture: panning moves it and paints only what comes in.
+
+What is too much for one event is painted part by part over several; meanwhile the other
+parts show what they showed before.
+"""
 
 from __future__ import annotations
 
@@ -6,8 +10,16 @@ from PySide6.QtCore import QPoint, QPointF, QRect, QRectF, QSize, QSizeF
 from PySide6.QtGui import QColor, QPainter, QPixmap
 
 from netsketch.sheet.drawing import Drawing
+from netsketch.sheet.frame import Frame
+from netsketch.sheet.paint_plates import READABLE_NAME
 from netsketch.sheet.painter import paint_frame
 from netsketch.sheet.view import View
+
+AT_ONCE = 3_000
+"""Plates and links painted in one part; with their names and texts they take as long as
+:data:`_TEXT` times as many."""
+_TEXT = 8
+_LEAST_SIDE = 64
 
 
 class RestingPicture:
@@ -17,47 +29,94 @@ class RestingPicture:
         self._pixmap = QPixmap()
         self._view = View()
         self._still = False
+        self._waiting: list[QRect] = []
+
+    @property
+    def finished(self) -> bool:
+        """Whether every part shows the drawing as it is."""
+        return not self._waiting
+
+    def forget(self) -> None:
+        """Show nothing of the last drawing while the next is painted."""
+        self._pixmap = QPixmap()
 
     def picture(
         self, drawing: Drawing, view: View, size: QSize, ratio: float, still: bool
     ) -> QPixmap:
         """Return the picture of ``drawing`` for ``view``, painted only where it has to
         be. ``ratio``: device pixels for one pixel of the window."""
+        window = QRect(QPoint(0, 0), size)
         fits = self._pixmap.size() == size * ratio and self._view.scale == view.scale
-        if drawing.stale or not fits or (still and not self._still):
+        moved = view != self._view
+        finer = still and not self._still
+        if drawing.stale or finer or not fits or (moved and not ratio.is_integer()):
             self._still = still
-            self._paint(drawing, view, size, ratio, [QRect(QPoint(0, 0), size)], None)
-        elif not ratio.is_integer() and view != self._view:
-            self._paint(drawing, view, size, ratio, [QRect(QPoint(0, 0), size)], None)
-        elif view != self._view:
+            if moved or not fits:
+                self._take_over(drawing, view, size, ratio)
+            self._waiting = [window]
+        elif moved:
             push = QPoint(round(view.x - self._view.x), round(view.y - self._view.y))
-            self._paint(drawing, view, size, ratio, _strips(size, push), push)
+            self._take_over(drawing, view, size, ratio)
+            pushed = [part.translated(push) & window for part in self._waiting]
+            self._waiting = [part for part in pushed if not part.isEmpty()]
+            self._waiting += _strips(size, push)
         drawing.stale = False
+        if self._waiting:
+            self._paint_some(drawing)
         return self._pixmap
 
-    def _paint(
-        self,
-        drawing: Drawing,
-        view: View,
-        size: QSize,
-        ratio: float,
-        parts: list[QRect],
-        push: QPoint | None,
-    ) -> None:
+    def _take_over(self, drawing: Drawing, view: View, size: QSize, ratio: float) -> None:
+        """Turn the picture into one for ``view``, made of what it shows already."""
         fresh = QPixmap(size * ratio)
         fresh.setDevicePixelRatio(ratio)
-        frame = drawing.resting(view.scale, self._still)
-        with QPainter(fresh) as painter:
-            if push is not None:
-                painter.drawPixmap(push, self._pixmap)
-            for part in parts:
+        fresh.fill(QColor(drawing.look.paper))
+        if not self._pixmap.isNull():
+            grown = view.scale / self._view.scale
+            with QPainter(fresh) as painter:
+                if grown == 1:
+                    painter.translate(round(view.x - self._view.x), round(view.y - self._view.y))
+                else:
+                    painter.translate(view.x - self._view.x * grown, view.y - self._view.y * grown)
+                    painter.scale(grown, grown)
+                painter.drawPixmap(0, 0, self._pixmap)
+        self._pixmap, self._view = fresh, view
+
+    def _paint_some(self, drawing: Drawing) -> None:
+        """Paint waiting parts until one event has had its share."""
+        frame, spent = drawing.resting(self._view.scale, self._still), 0
+        with QPainter(self._pixmap) as painter:
+            while self._waiting and spent < AT_ONCE / 2:
+                part = self._waiting.pop(0)
+                shown = frame.within(_on_sheet(self._view, part))
+                effort = _effort(shown)
+                if effort > AT_ONCE and max(part.width(), part.height()) > 2 * _LEAST_SIDE:
+                    self._waiting[:0] = _halves(part)
+                    continue
+                spent += effort
                 painter.setClipRect(part)
                 painter.fillRect(part, QColor(drawing.look.paper))
                 painter.save()
-                painter.setTransform(view.transform(), True)
-                paint_frame(painter, frame.within(_on_sheet(view, part)))
+                painter.setTransform(self._view.transform(), True)
+                paint_frame(painter, shown)
                 painter.restore()
-        self._pixmap, self._view = fresh, view
+
+
+def _effort(frame: Frame) -> int:
+    """Return how many plates and links without texts take as long to paint."""
+    shown = int(frame.nodes.sum()) + int(frame.links.sum())
+    return shown * (_TEXT if frame.scale >= READABLE_NAME else 1)
+
+
+def _halves(part: QRect) -> list[QRect]:
+    """Return a part of the window cut across its longer side."""
+    first, second = QRect(part), QRect(part)
+    if part.width() > part.height():
+        first.setWidth(part.width() // 2)
+        second.setLeft(first.right() + 1)
+    else:
+        first.setHeight(part.height() // 2)
+        second.setTop(first.bottom() + 1)
+    return [first, second]
 
 
 def _strips(size: QSize, push: QPoint) -> list[QRect]:

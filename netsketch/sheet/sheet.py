@@ -85,6 +85,7 @@ class Sheet(QWidget):
         """Show another document, whole; ``None`` shows an empty sheet."""
         self._leave_off()
         self._lit = {}
+        self._resting.forget()
         self.drawing.set_document(document)
         self.select()
         self.fit()
@@ -101,6 +102,11 @@ class Sheet(QWidget):
         """Light one path above the reading: link id -> direction (1 or -1)."""
         self._lit = dict(links or {})
         self.update()
+
+    @property
+    def finished(self) -> bool:
+        """Whether the last painting showed everything; if not, the next ones will."""
+        return self._resting.finished
 
     @property
     def look(self) -> Look:
@@ -291,6 +297,8 @@ class Sheet(QWidget):
         picture = self._resting.picture(
             self.drawing, self.view, self.size(), self.devicePixelRatioF(), still
         )
+        if not self._resting.finished:
+            self.update()
         with QPainter(self) as painter:
             painter.drawPixmap(0, 0, picture)
             painter.setRenderHint(QPainter.RenderHint.Antialiasing)
