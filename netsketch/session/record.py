@@ -66,6 +66,8 @@ def write(
     """
     if wishes.out.suffix.lower() not in SUFFIXES:
         raise FormatError(str(wishes.out), "", WRONG_SUFFIX)
+    if not wishes.out.parent.is_dir():  # said before the work, not after it
+        raise FormatError(str(wishes.out), "", "cannot be written: there is no such folder")
     answers = Answers(document)
     ledger = answers.ledger_task()(cancelled)
     record = gather(
