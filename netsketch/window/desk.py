@@ -98,6 +98,7 @@ class Desk(QObject):
         self.document = document
         self._leave = document.subscribe(self._follow)
         self.focus = self.pair = None
+        self.kind = "outward"
         self.ledger = None
         if self.core_is_ready:
             self._new_answers()

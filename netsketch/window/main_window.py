@@ -8,7 +8,7 @@ from functools import partial
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QPoint, Qt
-from PySide6.QtGui import QCloseEvent
+from PySide6.QtGui import QCloseEvent, QGuiApplication
 from PySide6.QtWidgets import (
     QDockWidget,
     QLabel,
@@ -36,6 +36,9 @@ from netsketch.window.trial_strip import TrialStrip
 if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
 
+LONG_JOBS = ("core", "record", "picture")
+"""Jobs that take so long that opening a file and the ledger do not wait for them."""
+
 _RIGHT, _BOTTOM = Qt.DockWidgetArea.RightDockWidgetArea, Qt.DockWidgetArea.BottomDockWidgetArea
 
 
@@ -48,8 +51,8 @@ class MainWindow(QMainWindow):
         self.resize(1440, 900)
         self.settings = Settings()
         self.ask = Questions(self)
-        self.jobs = Jobs()
-        self.relay = Relay(self.jobs, self)
+        self.jobs, self.long_jobs = Jobs(), Jobs()
+        self.relay = Relay(self.jobs, self, dict.fromkeys(LONG_JOBS, self.long_jobs))
         self.desk = Desk(self.relay, self)
         self.files = Files(self.desk, self.relay, self.settings, self.ask, self)
         self.sheet = Sheet()
@@ -67,6 +70,8 @@ class MainWindow(QMainWindow):
         self.restoreState(self.settings.bytes_of("state"))
         self.ledger_dock.hide()
         self._show_document()
+        self._show_selection()
+        self._show_tool("select")
         self._show_answer()
 
     # -- assembly -----------------------------------------------------------------------
@@ -150,6 +155,7 @@ class MainWindow(QMainWindow):
         self.files.state_changed.connect(self.state.setText)
         self.files.noted.connect(self.notice.say)
         self.files.recent_changed.connect(self._fill_recent)
+        QGuiApplication.styleHints().colorSchemeChanged.connect(self._follow_system)
 
     # -- showing ------------------------------------------------------------------------
 
@@ -273,6 +279,10 @@ class MainWindow(QMainWindow):
         self.sheet.set_look(look)
         self.actions_by_id[f"look_{name}"].setChecked(True)
 
+    def _follow_system(self) -> None:
+        if self.settings.look == "system":
+            self.set_look("system")
+
     def toggle_ledger(self) -> None:
         """Show or hide the ledger."""
         self.ledger_dock.setVisible(not self.ledger_dock.isVisible())
@@ -284,7 +294,9 @@ class MainWindow(QMainWindow):
             return
         self.settings.keep_bytes("geometry", self.saveGeometry())
         self.settings.keep_bytes("state", self.saveState())
+        self.hide()  # a routing core that is being compiled can not be told to stop
         self.jobs.close()
+        self.long_jobs.close()
         super().closeEvent(event)
 
 
