@@ -12,9 +12,8 @@ from dataclasses import dataclass
 from netsketch.analysis import Ledger, LedgerRow
 from netsketch.model import Plan
 from netsketch.reports.ledger import LEDGER_COLUMNS, ledger_cells
-from netsketch.reports.record_figures import percent
+from netsketch.reports.record_figures import percent, rate
 from netsketch.reports.record_numbers import (
-    LinkLoad,
     Loads,
     RouterHit,
     SinglePoint,
@@ -179,8 +178,8 @@ def _summary(
     if fresh:
         word = "failure" if fresh == 1 else "failures"
         yield f"With the change in place, {fresh:,} more {word} would cut routers off."
-    if carried is not None and carried.links:
-        yield from _fullest(carried.links[0])
+    if carried is not None:
+        yield from _carried(carried)
 
 
 def pairs_text(count: int) -> str:
@@ -198,8 +197,12 @@ def _worst(ledger: Ledger, names: Names) -> str:
     return f", at most {after - before:,} more in cost ({ends}: {before:,} → {after:,})"
 
 
-def _fullest(link: LinkLoad) -> Iterator[str]:
-    if link.used_after is not None:
-        where = f"{link.name} towards {link.head}"
-        was = "" if link.used_before is None else f" (now {percent(link.used_before)})"
-        yield f"The fullest link is {where}, at {percent(link.used_after)}{was}."
+def _carried(loads: Loads) -> Iterator[str]:
+    lost, before = loads.undelivered_after, loads.undelivered_before
+    if lost > before:
+        yield f"{rate(lost)} Mbit/s of demand find no way (now {rate(before)})."
+    fullest = loads.links[0] if loads.links else None
+    if fullest is not None and fullest.used_after:
+        where = f"{fullest.name} towards {fullest.head}"
+        was = "" if fullest.used_before is None else f" (now {percent(fullest.used_before)})"
+        yield f"The fullest link is {where}, at {percent(fullest.used_after)}{was}."

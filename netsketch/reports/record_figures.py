@@ -34,5 +34,11 @@ def percent(part: float | None) -> str:
 
 
 def more(rows: tuple[object, ...], most: int, what: str) -> str:
-    """Return how many rows a table leaves out, as the sentence before its note."""
-    return f"{len(rows) - most:,} more {what} are not listed. " if len(rows) > most else ""
+    """Return how many rows a table leaves out, as the sentence before its note; ``what``
+    names one of them."""
+    left = len(rows) - most
+    if left <= 0:
+        return ""
+    return (
+        f"1 more {what} is not listed. " if left == 1 else f"{left:,} more {what}s are not listed. "
+    )

@@ -92,7 +92,7 @@ def _hit(record: Record) -> Iterator[str]:
     ]  # fmt: skip
     yield _table(("Router", "Loses", "Moves", "Regains", "Worst extra cost"), rows, " rrrr")
     yield (
-        f"{more(record.routers_hit, MOST, 'routers')}Counted in destinations: other routers that "
+        f"{more(record.routers_hit, MOST, 'router')}Counted in destinations: other routers that "
         "this router can no longer reach, reaches another way or at another cost, or reaches "
         "again. Pairs that begin or end at a router taken down are not counted."
     )
@@ -115,7 +115,7 @@ def _single_points(record: Record) -> Iterator[str]:
         for point in record.single_points[:MOST]
     ]
     yield _table(("If this fails too", "Pairs cut off now", "After the change"), rows, " rr")
-    left = more(record.single_points, MOST, "failures")
+    left = more(record.single_points, MOST, "failure")
     yield f"{left}Every link, router and shared-risk group, each failing alone."
 
 
@@ -131,7 +131,7 @@ def _loads(record: Record) -> Iterator[str]:
     header = ("Link", "Towards", "Mbit/s now", "After", "Used now", "After")
     yield _table(header, rows, "  rrrr")
     yield (
-        f"{more(record.loads.links, MOST, 'loads')}Demands that find no way: "
+        f"{more(record.loads.links, MOST, 'load')}Demands that find no way: "
         f"{rate(record.loads.undelivered_before)} Mbit/s now, "
         f"{rate(record.loads.undelivered_after)} Mbit/s after the change."
     )

@@ -199,6 +199,13 @@ def test_loads_before_and_after() -> None:
     assert recorded(plan_of(SQUARE), LinkState("b-d")).loads is None
 
 
+def test_demand_that_finds_no_way_is_said() -> None:
+    plan = plan_of("a-b 5, b-c 5")
+    plan.apply(edits.add(plan, Demand(source="a", target="c", mbps=40)))
+    summary = recorded(plan, LinkState("b-c")).summary
+    assert summary[-1] == "40 Mbit/s of demand find no way (now 0)."
+
+
 def test_html_says_it_all_and_fetches_nothing() -> None:
     plan = demo("harbour-campus")
     record = recorded(plan, LinkState("l37"), LinkState("l38"), rows=15)
