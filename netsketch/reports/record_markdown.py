@@ -12,7 +12,7 @@ from netsketch.reports.record import Record
 from netsketch.reports.record_figures import MOST, cost, count, more, percent, rate, signed
 from netsketch.reports.record_words import Step, shown
 
-_MARKUP = re.compile(r"[\\`*_{}\[\]()<>#|~!&$@^:=\"]|(?<=www)\.", re.IGNORECASE)
+_MARKUP = re.compile(r"[\\`*_{}\[\]<>#|~!&$@^=\"]|:(?=//)|(?<=www)\.", re.IGNORECASE)
 
 
 def escaped(text: str) -> str:
