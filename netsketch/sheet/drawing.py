@@ -90,9 +90,10 @@ class Drawing:
         if self._frame is None:
             self._frame = frame_of(self.plan, self.reading, self.look, self.lettering, self.unit)
         if self._touched:
-            self._frame = edited(self._frame, self.plan, self._touched)
-            self._touched.clear()
-        self._frame = with_reading(self._frame, self.reading, self.look)
+            touched, self._touched = self._touched, set()
+            self._frame = edited(self._frame, self.plan, touched, self.reading, self.look)
+        else:
+            self._frame = with_reading(self._frame, self.reading, self.look)
         return self._frame
 
     def resting(self, scale: float, still: bool) -> Frame:

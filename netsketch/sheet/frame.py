@@ -91,7 +91,7 @@ def frame_of(
         tag_boxes=boxes,
         tag_fits=fits,
         reading=reading,
-        marks=None if reading is None else marks_of(reading, contents, look),
+        marks=_marks(reading, contents, look),
         look=look,
         lettering=lettering,
         scale=1.0,
@@ -107,19 +107,22 @@ def relaid(frame: Frame) -> Frame:
     return replace(frame, lines=lines, tag_boxes=boxes, tag_fits=fits)
 
 
-def edited(frame: Frame, plan: Plan, touched: Set[str]) -> Frame:
-    """Return the frame after an edit of these nodes and links; it takes over what the
-    edit left alone, so a small one costs little. Equal to the plan read anew."""
-    before, lettering, reading = frame.contents, frame.lettering, frame.reading
+def edited(
+    frame: Frame, plan: Plan, touched: Set[str], reading: Reading | None, look: Look
+) -> Frame:
+    """Return the frame after an edit of these nodes and links, with this reading and look;
+    it takes over what the edit left alone, so a small one costs little. Equal to the plan
+    read anew."""
+    before, lettering = frame.contents, frame.lettering
     contents, source = brought_up(before, plan, lettering, touched)
+    if _retold(frame.reading, reading):
+        source = np.full_like(source, -1)
     fresh = tags_of(contents, lettering, reading, np.flatnonzero(source < 0))
-    same_rows = contents.nodes.ids == before.nodes.ids and contents.links.ids == before.links.ids
-    marks = frame.marks
-    if reading is not None and not same_rows:
-        marks = marks_of(reading, contents, frame.look)
-    lines = frame.lines if contents.lies_like(before) else lines_of(contents)
     tags = retold(frame.tags, source, fresh)
+    lines = frame.lines if contents.lies_like(before) else lines_of(contents)
     boxes, fits = place_tags(tags, lines, contents)
+    as_before = contents.nodes.ids == before.nodes.ids and contents.links.ids == before.links.ids
+    as_before &= reading is frame.reading and look is frame.look
     return replace(
         frame,
         contents=contents,
@@ -127,7 +130,9 @@ def edited(frame: Frame, plan: Plan, touched: Set[str]) -> Frame:
         tags=tags,
         tag_boxes=boxes,
         tag_fits=fits,
-        marks=marks,
+        reading=reading,
+        marks=frame.marks if as_before else _marks(reading, contents, look),
+        look=look,
         nodes=np.ones(len(contents.nodes.ids), dtype=bool),
         links=np.ones(len(contents.links.ids), dtype=bool),
     )
@@ -137,14 +142,22 @@ def with_reading(frame: Frame, reading: Reading | None, look: Look) -> Frame:
     """Return the frame with another reading or look."""
     if reading is frame.reading and look is frame.look:
         return frame
-    retell = _tells(reading) or _tells(frame.reading)
-    marks = None if reading is None else marks_of(reading, frame.contents, look)
-    frame = replace(frame, reading=reading, marks=marks, look=look)
-    if retell:
-        frame.tags = tags_of(frame.contents, frame.lettering, reading)
-        placed = place_tags(frame.tags, frame.lines, frame.contents)
-        frame.tag_boxes, frame.tag_fits = placed
-    return frame
+    marks = _marks(reading, frame.contents, look)
+    again = replace(frame, reading=reading, marks=marks, look=look)
+    if _retold(frame.reading, reading):
+        again.tags = tags_of(frame.contents, frame.lettering, reading)
+        placed = place_tags(again.tags, frame.lines, frame.contents)
+        again.tag_boxes, again.tag_fits = placed
+    return again
+
+
+def _marks(reading: Reading | None, contents: Contents, look: Look) -> Marks | None:
+    return None if reading is None else marks_of(reading, contents, look)
+
+
+def _retold(before: Reading | None, now: Reading | None) -> bool:
+    """Return whether another reading changes texts in tags."""
+    return now is not before and (_tells(before) or _tells(now))
 
 
 def _tells(reading: Reading | None) -> bool:

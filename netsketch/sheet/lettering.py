@@ -16,6 +16,8 @@ _JOINERS = "\u200d\ufe0f"  # inside emoji; everything else unprintable becomes a
 def flat(text: str) -> str:
     """Return ``text`` on one line without control or direction characters, cut to
     :data:`LONGEST` characters."""
+    if text.isprintable() and len(text) <= LONGEST:
+        return text.strip()
     cut = text[: LONGEST + 1]
     clean = "".join(c if c.isprintable() or c in _JOINERS else " " for c in cut).strip()
     return clean if len(text) <= LONGEST else clean[:LONGEST] + "…"

@@ -12,7 +12,7 @@ from functools import cached_property
 
 import numpy as np
 
-from netsketch.readings.reading import LinkMark, PlateMark, Reading, Travel
+from netsketch.readings.reading import PlateMark, Reading, Travel
 from netsketch.sheet.contents import Contents, Flags, Floats, Rows
 from netsketch.sheet.look import Look, cividis
 
@@ -36,19 +36,20 @@ class Stroke:
 
 @dataclass
 class Strands:
-    """All strands of one stroke: link rows, offsets to the side, directions."""
+    """All strands of one stroke: rows of links that are laid alike, with the offset to the
+    side and the direction."""
 
-    rows: list[int] = field(default_factory=list)
-    offsets: list[float] = field(default_factory=list)
-    directions: list[int] = field(default_factory=list)
+    laid: list[tuple[Rows, float, int]] = field(default_factory=list)
 
     @cached_property
     def arrays(self) -> tuple[Rows, Floats, Rows]:
-        """The same as arrays, once all strands are laid."""
+        """Link rows, offsets and directions, one for each strand."""
+        rows, offsets, directions = zip(*self.laid, strict=True)
+        counts = [len(alike) for alike in rows]
         return (
-            np.array(self.rows, dtype=np.intp),
-            np.array(self.offsets, dtype=float),
-            np.array(self.directions, dtype=np.intp),
+            np.concatenate(rows),
+            np.repeat(np.array(offsets, dtype=float), counts),
+            np.repeat(np.array(directions, dtype=np.intp), counts),
         )
 
 
@@ -74,16 +75,20 @@ class Marks:
     def shares(self) -> dict[int, tuple[Rows, Floats, Floats]]:
         """For each hue the plates reached by its first hop: their rows, and where along
         the plate its part begins and ends, 0 to 1."""
-        parts: dict[int, list[tuple[int, float, float]]] = {}
+        alike: dict[tuple[int, ...], list[int]] = {}
         for row, mark in self.plates.items():
-            count = len(mark.letters)
-            for place, index in enumerate(mark.letters):
-                part = (row, place / count, (place + 1) / count)
+            alike.setdefault(mark.letters, []).append(row)
+        parts: dict[int, list[tuple[Rows, Floats, Floats]]] = {}
+        for letters, rows in alike.items():
+            all_rows = np.array(rows, dtype=np.intp)
+            for place, index in enumerate(letters):
+                start = np.full(len(rows), place / len(letters))
+                part = (all_rows, start, start + 1 / len(letters))
                 parts.setdefault(self.hues[index], []).append(part)
         found = {}
         for hue, listed in parts.items():
-            rows, start, end = zip(*listed, strict=True)
-            found[hue] = np.array(rows, dtype=np.intp), np.array(start), np.array(end)
+            shared, start, end = map(np.concatenate, zip(*listed, strict=True))
+            found[hue] = shared, start, end
         return found
 
 
@@ -124,24 +129,20 @@ def _strands_of(
 
     Most links of a reading are alike, so each layout of strands is worked out once.
     """
+    alike: dict[tuple[Travel, ...], list[int]] = {}
+    row_of = contents.links.row
+    for key, mark in reading.links.items():
+        if key in row_of:
+            alike.setdefault(mark.travels, []).append(row_of[key])
     strands: dict[Stroke, Strands] = {}
     named = np.zeros(len(contents.links.ids), dtype=bool)
     reach = np.zeros(len(contents.links.ids))
-    layouts: dict[tuple[object, ...], Layout] = {}
-    for key, mark in reading.links.items():
-        row = contents.links.row.get(key)
-        if row is None:
-            continue
-        named[row] = True
-        alike = tuple((t.direction, t.role, t.letters, t.share) for t in mark.travels)
-        layout = layouts.get(alike)
-        if layout is None:
-            layout = layouts[alike] = _layout(mark, reading, look, strands)
-        reach[row] = layout[1]
-        for strand, offset, direction in layout[0]:
-            strand.rows.append(row)
-            strand.offsets.append(offset)
-            strand.directions.append(direction)
+    for travels, listed in alike.items():
+        rows = np.array(listed, dtype=np.intp)
+        laid, half = _layout(travels, reading, look, strands)
+        named[rows], reach[rows] = True, half
+        for strand, offset, direction in laid:
+            strand.laid.append((rows, offset, direction))
     return strands, named, reach
 
 
@@ -149,9 +150,11 @@ Layout = tuple[list[tuple[Strands, float, int]], float]
 """The strands of a link with their offsets and directions, and half their width."""
 
 
-def _layout(mark: LinkMark, reading: Reading, look: Look, strands: dict[Stroke, Strands]) -> Layout:
+def _layout(
+    travels: tuple[Travel, ...], reading: Reading, look: Look, strands: dict[Stroke, Strands]
+) -> Layout:
     """Set strands side by side across a link, centred on it."""
-    strokes = list(_strokes(mark, reading, look))
+    strokes = list(_strokes(travels, reading, look))
     total = sum(stroke.width for stroke, _ in strokes) + 1.0 * max(len(strokes) - 1, 0)
     edge, laid = -total / 2, []
     for stroke, direction in strokes:
@@ -161,9 +164,11 @@ def _layout(mark: LinkMark, reading: Reading, look: Look, strands: dict[Stroke, 
     return laid, total / 2
 
 
-def _strokes(mark: LinkMark, reading: Reading, look: Look) -> Iterator[tuple[Stroke, int]]:
+def _strokes(
+    travels: tuple[Travel, ...], reading: Reading, look: Look
+) -> Iterator[tuple[Stroke, int]]:
     # Positive offsets lie right of tail-to-head (y points down), so -1 comes first.
-    for travel in sorted(mark.travels, key=lambda travel: travel.direction):
+    for travel in sorted(travels, key=lambda travel: travel.direction):
         for stroke in _strokes_of(travel, reading, look):
             yield stroke, travel.direction
 

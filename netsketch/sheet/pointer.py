@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QPointF, Qt
-from PySide6.QtGui import QMouseEvent
+from PySide6.QtGui import QMouseEvent, QWheelEvent
 
 from netsketch.sheet.gestures import Gesture, Pan, gesture_for
 from netsketch.sheet.hits import link_at, node_at
@@ -73,6 +73,19 @@ class Pointer:
             sheet.begin_cost_edit(contents.links.ids[link])
         else:
             sheet.draw_node(sheet.view.to_sheet(event.position()))
+
+    def turn(self, event: QWheelEvent) -> None:
+        """A wheel zooms at the pointer, with Shift it pans sideways; two fingers pan, or
+        zoom with Ctrl."""
+        view, fingers, turn = self._sheet.view, event.pixelDelta(), event.angleDelta()
+        if event.modifiers() & Qt.KeyboardModifier.ShiftModifier:
+            view = view.panned((turn.x() or turn.y()) / 2, 0)
+        elif event.modifiers() & Qt.KeyboardModifier.ControlModifier or fingers.isNull():
+            view = view.zoomed(1.2 ** (turn.y() / 120), event.position())
+        else:
+            view = view.panned(fingers.x(), fingers.y())
+        self._sheet.show_view(view)
+        event.accept()
 
     def cancel(self) -> bool:
         """Drop the gesture under way; return whether there was one."""

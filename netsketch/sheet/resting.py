@@ -15,7 +15,7 @@ from netsketch.sheet.paint_plates import READABLE_NAME
 from netsketch.sheet.painter import paint_frame
 from netsketch.sheet.view import View
 
-AT_ONCE = 3_000
+AT_ONCE = 5_000
 """Plates and links painted in one part; with their names and texts they take as long as
 :data:`_TEXT` times as many."""
 _TEXT = 8

@@ -39,7 +39,6 @@ from netsketch.sheet.writing import Writing
 
 _REST_MS = 100
 _Reason = Qt.FocusReason
-_SHIFT, _CTRL = Qt.KeyboardModifier.ShiftModifier, Qt.KeyboardModifier.ControlModifier
 
 Focus = tuple[str, str]
 """("router" | "segment" | "link", id)."""
@@ -164,12 +163,11 @@ class Sheet(QWidget):
         at = self.middle_of(key)
         if at is None:
             return
-        size = QSizeF(self.size())
-        inner = self.view.area(size)
-        margin = 60 / self.view.scale
+        size, margin = QSizeF(self.size()), 60 / self.view.scale
+        inner = self.view.area(size).adjusted(margin, margin, -margin, -margin)
         if self.view.scale < 0.5:
             self.show_view(View(0.8).centred(at, size))
-        elif not inner.adjusted(margin, margin, -margin, -margin).contains(at):
+        elif not inner.contains(at):
             self.show_view(self.view.centred(at, size))
 
     def middle_of(self, key: str) -> QPointF | None:
@@ -222,6 +220,11 @@ class Sheet(QWidget):
         segment = self.drawing.frame.contents.nodes.segment
         row = self.drawing.frame.contents.nodes.row[key]
         return ("segment" if segment[row] else "router"), key
+
+    def _selected_focus(self) -> Focus | None:
+        if self.selected_nodes:
+            return self.focus_of_node(self.selected_nodes[-1])
+        return ("link", self.selected_links[-1]) if self.selected_links else None
 
     # -- editing ----------------------------------------------------------------------
 
@@ -317,9 +320,9 @@ class Sheet(QWidget):
             paint_frame(painter, lifted)
         overlay.paint_lit_path(painter, frame, self._lit)
         overlay.paint_hover(painter, frame, self._pointer.node, self._pointer.link)
-        rows = frame.contents.nodes.row, frame.contents.links.row
-        nodes = [rows[0][key] for key in self.selected_nodes]
-        overlay.paint_selection(painter, frame, nodes, [rows[1][k] for k in self.selected_links])
+        nodes = [frame.contents.nodes.row[key] for key in self.selected_nodes]
+        links = [frame.contents.links.row[key] for key in self.selected_links]
+        overlay.paint_selection(painter, frame, nodes, links)
         reading = self.drawing.reading
         overlay.paint_large(painter, frame, reading.focus if reading else (), nodes)
         if self._pointer.gesture is not None:
@@ -343,27 +346,15 @@ class Sheet(QWidget):
         self._pointer.double_click(event)
 
     def wheelEvent(self, event: QWheelEvent) -> None:
-        """A wheel zooms at the pointer, with Shift it pans sideways; two fingers pan, or
-        zoom with Ctrl."""
-        fingers, turn = event.pixelDelta(), event.angleDelta()
-        zooming = bool(event.modifiers() & _CTRL) or fingers.isNull()
-        if event.modifiers() & _SHIFT:
-            self.show_view(self.view.panned((turn.x() or turn.y()) / 2, 0))
-        elif zooming:
-            self.show_view(self.view.zoomed(1.2 ** (turn.y() / 120), event.position()))
-        else:
-            self.show_view(self.view.panned(fingers.x(), fingers.y()))
-        event.accept()
+        self._pointer.turn(event)
 
     def event(self, event: QEvent) -> bool:
         if isinstance(event, QHelpEvent):
             words = self._pointer.words(QPointF(event.pos()))
             QToolTip.showText(event.globalPos(), words, self)
             return True
-        if (
-            isinstance(event, QNativeGestureEvent)
-            and event.gestureType() == Qt.NativeGestureType.ZoomNativeGesture
-        ):
+        pinch = Qt.NativeGestureType.ZoomNativeGesture
+        if isinstance(event, QNativeGestureEvent) and event.gestureType() == pinch:
             self.show_view(self.view.zoomed(1 + event.value(), event.position()))
             return True
         return super().event(event)
@@ -374,11 +365,6 @@ class Sheet(QWidget):
         else:
             focus = self._selected_focus()
         self.menu_asked.emit(focus, event.globalPos())
-
-    def _selected_focus(self) -> Focus | None:
-        if self.selected_nodes:
-            return self.focus_of_node(self.selected_nodes[-1])
-        return ("link", self.selected_links[-1]) if self.selected_links else None
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         if not press_key(self, event):

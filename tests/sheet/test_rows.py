@@ -41,6 +41,13 @@ def assert_equal(one: Any, other: Any, place: str = "frame") -> None:
             if part.name != "lettering":
                 a, b = getattr(one, part.name), getattr(other, part.name)
                 assert_equal(a, b, f"{place}.{part.name}")
+    elif isinstance(one, dict):
+        assert list(one) == list(other), place
+        for key in one:
+            assert_equal(one[key], other[key], f"{place}[{key}]")
+    elif isinstance(one, list | tuple):
+        for a, b in zip(one, other, strict=True):
+            assert_equal(a, b, place)
     elif isinstance(one, np.ndarray):
         assert one.dtype == other.dtype, place
         np.testing.assert_allclose(one, other, err_msg=place)

@@ -1,14 +1,18 @@
 """What the sheet shows: readings, looks, views, and that it follows the document."""
 
+# ruff: noqa: N802  (Qt names the event handlers)
+
 from __future__ import annotations
 
 import itertools
 from collections.abc import Callable
 
+import numpy as np
 import pytest
-from PySide6.QtCore import QPoint, QPointF, Qt
+from PySide6.QtCore import QEvent, QObject, QPoint, QPointF, Qt
 from PySide6.QtGui import QColor, QImage, QWheelEvent
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QApplication, QWidget
+from pytestqt.qtbot import QtBot
 
 from netsketch.model import Plan, edits
 from netsketch.readings.reading import (
@@ -19,6 +23,7 @@ from netsketch.readings.reading import (
     Travel,
     letter,
 )
+from netsketch.sheet import resting
 from netsketch.sheet.look import DARK, LIGHT
 from tests.sheet.conftest import Hands, quay_plan
 
@@ -243,6 +248,74 @@ def test_a_moved_frame_is_the_frame_read_anew(take: Callable[[Plan], Hands]) -> 
     fresh = take(hands.plan)
     fresh.sheet.show_view(hands.sheet.view)
     assert picture(fresh) == moved
+
+
+class Paintings(QObject):
+    """Counts how often a widget is painted."""
+
+    def __init__(self, widget: QWidget) -> None:
+        super().__init__(widget)
+        self.count = 0
+        widget.installEventFilter(self)
+
+    def eventFilter(self, _: QObject, event: QEvent) -> bool:
+        self.count += event.type() == QEvent.Type.Paint
+        return False
+
+
+def test_all_that_changes_in_one_turn_is_painted_once(hands: Hands, qtbot: QtBot) -> None:
+    sheet, plan = hands.sheet, hands.plan
+    qtbot.waitUntil(lambda: not sheet._rest.isActive())
+    QApplication.processEvents()
+    paintings = Paintings(sheet)
+    hands.document.apply(edits.try_costs(plan, "l1", 7, 7))
+    hands.document.apply(edits.rename(plan, "r2", "Hoist"))
+    sheet.set_reading(None)
+    sheet.set_reading(OUTWARD)
+    sheet.select(["r1"])
+    sheet.light_path({"l1": 1})
+    qtbot.waitUntil(lambda: paintings.count > 0)
+    QApplication.processEvents()
+    assert paintings.count == 1
+    assert not sheet._rest.isActive()
+
+
+def alike(one: QImage, other: QImage) -> bool:
+    """Return whether two pictures differ at most by what rounding at a seam does."""
+    pixels = [np.frombuffer(image.constBits(), np.uint8).astype(int) for image in (one, other)]
+    return len(pixels[0]) == len(pixels[1]) and int(np.abs(pixels[0] - pixels[1]).max()) <= 8
+
+
+def test_a_large_plan_is_painted_part_by_part(
+    take: Callable[[Plan], Hands], monkeypatch: pytest.MonkeyPatch
+) -> None:
+    hands = take(quay_plan())
+    hands.sheet.set_reading(OUTWARD)
+    whole = picture(hands)
+    monkeypatch.setattr(resting, "AT_ONCE", 10)
+    hands.sheet.drawing.stale = True
+    parts = 1
+    picture(hands)
+    while not hands.sheet.finished:
+        parts += 1
+        last = picture(hands)
+    assert parts > 2
+    assert alike(last, whole)
+
+
+def test_pushing_an_unfinished_picture_finishes_it_in_its_new_place(
+    hands: Hands, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    monkeypatch.setattr(resting, "AT_ONCE", 10)
+    hands.sheet.drawing.stale = True
+    picture(hands)
+    assert not hands.sheet.finished
+    hands.sheet.show_view(hands.sheet.view.panned(60, -30))
+    while not hands.sheet.finished:
+        pushed = picture(hands)
+    hands.sheet.drawing.stale = True
+    monkeypatch.undo()
+    assert alike(picture(hands), pushed)
 
 
 def test_low_zoom_shows_the_selected_plate_large_enough_to_read(hands: Hands) -> None:
