@@ -4,9 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from functools import partial
 
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QMainWindow, QMenu
+
+from netsketch.window.fields import finish_writing
 
 MENUS = ("File", "Edit", "View", "Draw", "Trial", "Reading", "Help")
 
@@ -105,11 +108,15 @@ def build(
             action.setCheckable(True)
             if entry.choice != "switch":
                 groups.setdefault(entry.choice, QActionGroup(window)).addAction(action)
-        handler = handlers[entry.id]
-        action.triggered.connect(lambda _=False, handler=handler: handler())
+        action.triggered.connect(partial(_run, handlers[entry.id]))
         menus[entry.menu].addAction(action)
         actions[entry.id] = action
     return actions, menus
+
+
+def _run(handler: Callable[[], object], _checked: bool = False) -> None:
+    finish_writing()
+    handler()
 
 
 def keys_text() -> str:

@@ -9,10 +9,12 @@ from typing import Any
 
 from PySide6.QtCore import QObject, Signal
 
+from netsketch import formats
 from netsketch.formats import FormatError
-from netsketch.session.document import Document
+from netsketch.session.document import NATIVE_SUFFIXES, Document
 from netsketch.window import questions
 from netsketch.window.desk import Desk
+from netsketch.window.fields import finish_writing
 from netsketch.window.questions import Questions
 from netsketch.window.relay import Relay
 from netsketch.window.settings import Settings
@@ -58,12 +60,16 @@ class Files(QObject):
             self._read(path)
 
     def _read(self, path: Path) -> None:
+        left = self._as_it_is()
         self.state_changed.emit(f"Opening {path.name}")
         self._relay.submit(
-            "open", lambda cancelled: Document.open(path), partial(self._opened, path)
+            "open", lambda cancelled: Document.open(path), partial(self._opened, path, left)
         )
 
-    def _opened(self, path: Path, result: Any) -> None:
+    def _as_it_is(self) -> tuple[Document, int]:
+        return self._desk.document, self._desk.document.plan.revision
+
+    def _opened(self, path: Path, left: tuple[Document, int], result: Any) -> None:
         self.state_changed.emit("")
         if isinstance(result, FormatError):
             self._settings.drop_recent(path)
@@ -71,7 +77,7 @@ class Files(QObject):
             self.ask.refuse(f"{result}\n\nThe plan on the sheet is as it was.")
         elif isinstance(result, Exception):
             raise result
-        else:
+        elif left == self._as_it_is() or self.may_leave():  # edits can be made while it is read
             self._desk.set_document(result)
             self._settings.add_recent(path)
             self.recent_changed.emit()
@@ -98,24 +104,40 @@ class Files(QObject):
         stem = name.name.removesuffix(".netsketch.json") + ".netsketch.json"
         folder = name.parent if name.is_absolute() else self._folder()
         path = self.ask.file_to_save(folder / stem)
-        return path is not None and self._write(path)
+        if path is None:
+            return False
+        if path.name.endswith(NATIVE_SUFFIXES):
+            return self._write(path)
+        plan = document.plan.snapshot()
+        self._write_apart("copy", lambda: formats.write(plan, path), path)
+        return not document.is_modified
 
     def _write(self, path: Path) -> bool:
-        return self._guarded(lambda: self._desk.document.save(path), path)
-
-    def _guarded(self, write: Callable[[], list[str] | None], path: Path) -> bool:
         try:
-            notes = write()
+            notes = self._desk.document.save(path)
         except FormatError as error:
             self.ask.refuse(f"{error}\n\nNothing was saved; the plan is still here.")
             return False
         if notes:
             self.noted.emit("\n".join(notes))
-        if self._desk.document.path == path:
-            self._settings.add_recent(path)
-            self.recent_changed.emit()
+        self._settings.add_recent(path)
+        self.recent_changed.emit()
         self._desk.plan_changed.emit()
         return True
+
+    def _write_apart(self, job: str, write: Callable[[], list[str] | None], path: Path) -> None:
+        """Write a file that is not the document's own, in the background."""
+        self.state_changed.emit(f"Writing {path.name}")
+        self._relay.submit(job, lambda cancelled: write(), partial(self._written, path))
+
+    def _written(self, path: Path, result: Any) -> None:
+        self.state_changed.emit("")
+        if isinstance(result, FormatError):
+            self.ask.refuse(f"{result}\n\nThe file was not written.")
+        elif isinstance(result, Exception):
+            raise result
+        else:
+            self.noted.emit("\n".join([f"{path.name} is written.", *(result or ())]))
 
     def save_picture(self) -> None:
         """Ask for a file and save the sheet with its reading as a picture."""
@@ -126,13 +148,14 @@ class Files(QObject):
         stem = document.title.removesuffix(".netsketch.json") + ".svg"
         path = self.ask.file_for_picture(self._folder() / stem)
         if path is not None:
+            plan, reading = document.plan.snapshot(), self._desk.reading
             look = look_named(self._settings.look)
-            reading = self._desk.reading
-            self._guarded(lambda: write_picture(document.plan, reading, path, look), path)
+            self._write_apart("picture", lambda: write_picture(plan, reading, path, look), path)
 
     def may_leave(self) -> bool:
         """Return whether the open document may be left: it is saved, or thrown away on
         purpose."""
+        finish_writing()
         document = self._desk.document
         if not document.is_modified:
             return True

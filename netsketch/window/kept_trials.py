@@ -8,13 +8,14 @@ from functools import partial
 from PySide6.QtWidgets import QMenu
 
 from netsketch.model import Edit, Plan, edits
+from netsketch.window.literal import on_button
 
 
 def fill(menu: QMenu, plan: Plan, apply: Callable[[Edit], None]) -> None:
     """Offer every kept trial of ``plan``."""
     menu.clear()
     for kept in plan.trials:
-        part = menu.addMenu(kept.name[:60])
+        part = menu.addMenu(on_button(kept.name[:60]))
         part.setToolTip(edits.counted(len(kept.changes), "change"))
         for text, edit in (
             ("Lay over the plan", edits.lay_kept),

@@ -14,6 +14,7 @@ from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersisten
 
 from netsketch.model import Plan
 from netsketch.reports.words import next_hops_text, outcome_text
+from netsketch.window.literal import as_tip
 
 if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
@@ -41,6 +42,7 @@ _DISPLAY, _TOOL_TIP = Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole
 _ALIGN = Qt.ItemDataRole.TextAlignmentRole
 _HORIZONTAL = Qt.Orientation.Horizontal
 _RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
+_LEFT = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
 _NO_PARENT = QModelIndex()
 Index = QModelIndex | QPersistentModelIndex
 
@@ -64,7 +66,7 @@ class LedgerModel(QAbstractTableModel):
         """Show another ledger, or none."""
         self.beginResetModel()
         self.ledger = ledger
-        self._plan = plan
+        self._plan = plan.snapshot()  # the rows stay readable when the plan moves on
         ids = [] if ledger is None else ledger.routers
         self._labels = [plan.nodes[key].label if key in plan.nodes else key for key in ids]
         self._alphabet = np.argsort(
@@ -124,8 +126,8 @@ class LedgerModel(QAbstractTableModel):
 
     def _key(self, ledger: Ledger, column: int) -> npt.NDArray[Any]:
         keys: tuple[npt.NDArray[Any], ...] = (
-            self._alphabet[ledger.sources],
-            self._alphabet[ledger.targets],
+            self._alphabet[ledger.sources] * len(self._labels) + self._alphabet[ledger.targets],
+            self._alphabet[ledger.targets] * len(self._labels) + self._alphabet[ledger.sources],
             ledger.outcomes.astype(np.int64),
             ledger.before,
             ledger.after,
@@ -171,8 +173,10 @@ class LedgerModel(QAbstractTableModel):
         return 0 if parent.isValid() else len(HEADERS)
 
     def data(self, index: Index, role: int = _DISPLAY) -> Any:
-        if role in (_DISPLAY, _TOOL_TIP):
+        if role == _DISPLAY:
             return self._texts(int(self._chosen[index.row()]))[index.column()][:400]
+        if role == _TOOL_TIP:
+            return as_tip(self._texts(int(self._chosen[index.row()]))[index.column()][:400])
         if role == _ALIGN and index.column() in _NUMBERS:
             return _RIGHT
         return None
@@ -183,4 +187,6 @@ class LedgerModel(QAbstractTableModel):
                 return HEADERS[section]
             if role == _TOOL_TIP:
                 return TIPS[section]
+            if role == _ALIGN:
+                return _RIGHT if section in _NUMBERS else _LEFT
         return None

@@ -82,7 +82,7 @@ class LedgerPanel(QWidget):
     def _lay_out(self) -> None:
         top = QHBoxLayout()
         title = QLabel("Ledger")
-        title.setProperty("role", "heading")
+        title.setProperty("role", "name")
         top.addWidget(title)
         top.addWidget(self.totals, 1)
         for widget in (

@@ -26,6 +26,7 @@ from netsketch.window.desk import Desk, Focus
 from netsketch.window.files import Files, demo_files
 from netsketch.window.inspector import Inspector
 from netsketch.window.ledger_panel import LedgerPanel
+from netsketch.window.literal import as_tip, on_button
 from netsketch.window.notice import Notice
 from netsketch.window.questions import Questions
 from netsketch.window.relay import Relay
@@ -36,8 +37,8 @@ from netsketch.window.trial_strip import TrialStrip
 if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
 
-LONG_JOBS = ("core", "record", "picture")
-"""Jobs that take so long that opening a file and the ledger do not wait for them."""
+WRITING = ("record", "picture", "copy")
+"""Jobs that write files, for which nothing else waits."""
 
 _RIGHT, _BOTTOM = Qt.DockWidgetArea.RightDockWidgetArea, Qt.DockWidgetArea.BottomDockWidgetArea
 
@@ -51,8 +52,9 @@ class MainWindow(QMainWindow):
         self.resize(1440, 900)
         self.settings = Settings()
         self.ask = Questions(self)
-        self.jobs, self.long_jobs = Jobs(), Jobs()
-        self.relay = Relay(self.jobs, self, dict.fromkeys(LONG_JOBS, self.long_jobs))
+        self.jobs, self.core_jobs, self.writing_jobs = Jobs(), Jobs(), Jobs()
+        apart = {"core": self.core_jobs, **dict.fromkeys(WRITING, self.writing_jobs)}
+        self.relay = Relay(self.jobs, self, apart)
         self.desk = Desk(self.relay, self)
         self.files = Files(self.desk, self.relay, self.settings, self.ask, self)
         self.sheet = Sheet()
@@ -60,7 +62,7 @@ class MainWindow(QMainWindow):
         self.ledger = LedgerPanel(self.ask)
         self.strip = TrialStrip()
         self.notice = Notice()
-        self.state = QLabel()
+        self.state, self.files_state = _state_label(), _state_label()
         self.actions_by_id, self.menus = actions.build(self, commands.handlers(self))
         self._lay_out()
         self._connect()
@@ -95,11 +97,14 @@ class MainWindow(QMainWindow):
         below.setMovable(False)
         below.addWidget(self.strip)
         self.addToolBar(Qt.ToolBarArea.BottomToolBarArea, below)
-        self.statusBar().addPermanentWidget(self.state)
+        for state in (self.files_state, self.state):
+            self.statusBar().addPermanentWidget(state)
         self._demos = QMenu("Open a demo network", self)
         for name, path in demo_files():
             self._demos.addAction(name, partial(self.files.open_path, path))
+        self._demos.setEnabled(not self._demos.isEmpty())
         self._recent = QMenu("Open recent", self)
+        self._recent.setToolTipsVisible(True)
         self._kept = QMenu("Kept trials", self)
         self.menus["Trial"].addMenu(self._kept)
         for menu in (self._demos, self._recent):
@@ -152,7 +157,7 @@ class MainWindow(QMainWindow):
         desk.ledger_changed.connect(self._show_ledger)
         desk.refused.connect(self.hint)
         desk.state_changed.connect(self.state.setText)
-        self.files.state_changed.connect(self.state.setText)
+        self.files.state_changed.connect(self.files_state.setText)
         self.files.noted.connect(self.notice.say)
         self.files.recent_changed.connect(self._fill_recent)
         QGuiApplication.styleHints().colorSchemeChanged.connect(self._follow_system)
@@ -171,7 +176,8 @@ class MainWindow(QMainWindow):
 
     def _show_plan(self) -> None:
         document = self.desk.document
-        self.setWindowTitle(f"{document.title}[*] – netsketch")
+        title = document.title.replace("[*]", "[*][*]")  # Qt's own mark, doubled, is a text
+        self.setWindowTitle(f"{title}[*] – netsketch")
         self.setWindowModified(document.is_modified)
         self.strip.show_trial(document.plan)
         self.inspector.refresh()
@@ -180,9 +186,9 @@ class MainWindow(QMainWindow):
             word = key.capitalize()
             action.setEnabled(label is not None)
             action.setStatusTip(f"{word}: {label}" if label else f"Nothing to {key}")
-            action.setToolTip(f"{word}: {label}" if label else f"Nothing to {key}")
+            action.setToolTip(as_tip(f"{word}: {label}") if label else f"Nothing to {key}")
             action.setIconText(word)
-            action.setText(f"{word}: {label[:60]}" if label else word)
+            action.setText(on_button(f"{word}: {label[:60]}") if label else word)
         kept_trials.fill(self._kept, document.plan, self.desk.apply)
         self._kept.setEnabled(len(document.plan.trials) > 0)
         self.ledger.show_kept(document.plan.trials.keys(), self.desk.baseline)
@@ -258,8 +264,10 @@ class MainWindow(QMainWindow):
     def _fill_recent(self) -> None:
         self._recent.clear()
         for path in self.settings.recent:
-            action = self._recent.addAction(path.name, partial(self.files.open_path, path))
-            action.setToolTip(str(path))
+            open_it = partial(self.files.open_path, path)
+            action = self._recent.addAction(on_button(path.name), open_it)
+            action.setToolTip(as_tip(str(path)))
+            action.setStatusTip(str(path))
         self._recent.setEnabled(bool(self.settings.recent))
 
     # -- what commands ask of the window -------------------------------------------------
@@ -295,9 +303,15 @@ class MainWindow(QMainWindow):
         self.settings.keep_bytes("geometry", self.saveGeometry())
         self.settings.keep_bytes("state", self.saveState())
         self.hide()  # a routing core that is being compiled can not be told to stop
-        self.jobs.close()
-        self.long_jobs.close()
+        for jobs in (self.jobs, self.writing_jobs, self.core_jobs):
+            jobs.close()
         super().closeEvent(event)
+
+
+def _state_label() -> QLabel:
+    made = QLabel()
+    made.setTextFormat(Qt.TextFormat.PlainText)
+    return made
 
 
 def _totals(ledger: Ledger | None) -> str:

@@ -4,10 +4,14 @@ from __future__ import annotations
 
 from pathlib import Path
 
+from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QFileDialog, QInputDialog, QMessageBox, QWidget
+
+from netsketch.window.literal import as_tip
 
 SAVE, THROW_AWAY, GO_BACK = "save", "throw away", "go back"
 
+_PLAIN = Qt.TextFormat.PlainText
 _PLANS = "Plans and graphs (*.json *.graphml *.xml *.gml);;All files (*)"
 _SAVES = "netsketch plan (*.netsketch.json);;GraphML (*.graphml);;GML (*.gml)"
 _RECORDS = "HTML (*.html);;PDF (*.pdf);;Markdown (*.md)"
@@ -25,6 +29,7 @@ class Questions:
         """Ask what to do with edits that are not saved."""
         box = QMessageBox(self._window)
         box.setWindowTitle("Unsaved edits")
+        box.setTextFormat(_PLAIN)
         box.setText(f"“{title}” has edits that are not saved.")
         box.setInformativeText("Save them before going on?")
         save = box.addButton("Save", QMessageBox.ButtonRole.AcceptRole)
@@ -68,13 +73,18 @@ class Questions:
 
     def text(self, title: str, label: str, value: str) -> str | None:
         """Ask for a line of text."""
-        text, sure = QInputDialog.getText(self._window, title, label, text=value)
+        text, sure = QInputDialog.getText(self._window, title, as_tip(label), text=value)
         return text if sure else None
 
     def tell(self, title: str, text: str) -> None:
-        """Say something that must not be missed."""
+        """Say something that must not be missed; ``text`` may be HTML of our own."""
         QMessageBox.information(self._window, title, text)
 
     def refuse(self, text: str) -> None:
         """Say why something was not done."""
-        QMessageBox.warning(self._window, "Not done", text)
+        box = QMessageBox(self._window)
+        box.setIcon(QMessageBox.Icon.Warning)
+        box.setWindowTitle("Not done")
+        box.setTextFormat(_PLAIN)
+        box.setText(text)
+        box.exec()

@@ -8,9 +8,11 @@ from collections.abc import Callable
 from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt
+from PySide6.QtGui import QGuiApplication
 
 from netsketch.model import Plan
 from netsketch.reports.words import delay_text, next_hops_text, outcome_text
+from netsketch.window.literal import as_tip
 
 if TYPE_CHECKING:
     from netsketch.analysis.table import RouteRow
@@ -30,9 +32,10 @@ TIPS = (
 _NUMBERS = (4, 5, 6)
 
 _DISPLAY, _TOOL_TIP = Qt.ItemDataRole.DisplayRole, Qt.ItemDataRole.ToolTipRole
-_ALIGN = Qt.ItemDataRole.TextAlignmentRole
+_ALIGN, _FOREGROUND = Qt.ItemDataRole.TextAlignmentRole, Qt.ItemDataRole.ForegroundRole
 _HORIZONTAL = Qt.Orientation.Horizontal
 _RIGHT = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
+_LEFT = Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter
 _NO_PARENT = QModelIndex()
 _FAR = float("inf")
 Index = QModelIndex | QPersistentModelIndex
@@ -188,10 +191,14 @@ class RouteTable(QAbstractTableModel):
         return 0 if parent.isValid() else len(HEADERS)
 
     def data(self, index: Index, role: int = _DISPLAY) -> Any:
-        if role in (_DISPLAY, _TOOL_TIP):
+        if role == _DISPLAY:
             return self._shown[index.row()].cells[index.column()][:400]
+        if role == _TOOL_TIP:
+            return as_tip(self._shown[index.row()].cells[index.column()][:400])
         if role == _ALIGN and index.column() in _NUMBERS:
             return _RIGHT
+        if role == _FOREGROUND and index.column() == CHANGE:
+            return QGuiApplication.palette().link()
         return None
 
     def headerData(self, section: int, orientation: Qt.Orientation, role: int = _DISPLAY) -> Any:
@@ -200,6 +207,8 @@ class RouteTable(QAbstractTableModel):
                 return "From" if self.inwards and section == 0 else HEADERS[section]
             if role == _TOOL_TIP:
                 return TIPS[section]
+            if role == _ALIGN:
+                return _RIGHT if section in _NUMBERS else _LEFT
         return None
 
 

@@ -78,6 +78,19 @@ def _style(look: Look) -> str:
         QLabel[role="title"] {{ font-size: 17px; font-weight: bold; }}
         QLabel[role="soft"] {{ color: {look.soft}; }}
         QLabel[role="heading"] {{ font-weight: bold; padding-top: 8px; }}
+        QLabel[role="name"] {{ font-weight: bold; }}
+        QLineEdit {{
+            border: 1px solid {look.faded}; border-radius: 3px; padding: 2px 4px;
+            background: {look.plate};
+        }}
+        QLineEdit:focus {{ border: 2px solid {look.ink}; padding: 1px 3px; }}
+        QLineEdit:disabled {{ border-color: {look.hairline}; }}
+        QCheckBox::indicator {{
+            width: 13px; height: 13px; border: 1px solid {look.soft}; border-radius: 3px;
+            background: {look.plate};
+        }}
+        QCheckBox::indicator:checked {{ background: {look.ink}; border-color: {look.ink}; }}
+        QCheckBox:focus {{ text-decoration: underline; }}
         QFrame[role="chip"] {{
             border: 1px solid {look.ink}; border-radius: 11px; background: {look.plate};
         }}

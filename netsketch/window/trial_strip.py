@@ -18,6 +18,7 @@ from PySide6.QtWidgets import (
 
 from netsketch.model import Plan, TrialChange, edits
 from netsketch.window.chips import chip_text
+from netsketch.window.literal import as_tip
 
 MOST_CHIPS = 60
 _LONGEST = 44
@@ -62,7 +63,7 @@ class TrialStrip(QFrame):
         row = QHBoxLayout(self)
         row.setContentsMargins(12, 4, 12, 4)
         title = QLabel("Trial")
-        title.setProperty("role", "heading")
+        title.setProperty("role", "name")
         row.addWidget(title)
         row.addWidget(area, 1)
         row.addWidget(self.totals)
@@ -101,7 +102,7 @@ class TrialStrip(QFrame):
         row.setSpacing(2)
         label = QLabel(text if len(text) <= _LONGEST else text[: _LONGEST - 1] + "…")
         label.setTextFormat(Qt.TextFormat.PlainText)
-        label.setToolTip(text[:500])
+        label.setToolTip(as_tip(text[:500]))
         remove = QToolButton()
         remove.setText("✕")
         remove.setAutoRaise(True)

@@ -262,6 +262,7 @@ def test_the_picture_of_the_sheet(harbour: Person, tmp_path: Path) -> None:
     harbour.click(harbour.at(find(harbour, "Gate-N")))
     harbour.ask.path = tmp_path / "sheet.svg"
     harbour.do("save_picture")
+    harbour.settle()
     assert "Gate-N" in harbour.ask.path.read_text()
 
 

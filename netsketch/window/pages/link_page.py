@@ -9,6 +9,7 @@ from PySide6.QtWidgets import QCheckBox, QGridLayout, QHBoxLayout, QLineEdit, QP
 
 from netsketch.model import Link, PlanError, Segment, edits
 from netsketch.model.checks import check_cost, quoted
+from netsketch.window.literal import as_tip, on_button
 from netsketch.window.pages.page import Page, button, form, label, line, short
 from netsketch.window.pages.usage import Usage
 
@@ -91,11 +92,13 @@ class LinkPage(Page):
         ):
             node = plan.nodes[end]
             is_segment = isinstance(node, Segment)
-            button_.setText(short(node.label, 24))
+            button_.setText(on_button(short(node.label, 24)))
             field.setText("0" if is_segment else str(value))
             field.setEnabled(not is_segment)
             field.setToolTip(
-                "Leaving a segment costs nothing" if is_segment else f"Leaving {node.label[:60]}"
+                "Leaving a segment costs nothing"
+                if is_segment
+                else as_tip(f"Leaving {node.label[:60]}")
             )
         planned = link.cost, link.cost_back
         self.trial_costs.setText("" if values == planned else _was(planned))

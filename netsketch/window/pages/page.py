@@ -5,9 +5,10 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt, Signal
-from PySide6.QtWidgets import QFormLayout, QLabel, QLineEdit, QPushButton, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QFormLayout, QLabel, QPushButton, QVBoxLayout, QWidget
 
 from netsketch.model import Edit, Plan
+from netsketch.window.fields import Field
 
 if TYPE_CHECKING:
     from netsketch.session.answers import Answers
@@ -48,14 +49,15 @@ def label(text: str, role: str = "", *, wrap: bool = False) -> QLabel:
     made = QLabel(text)
     made.setTextFormat(Qt.TextFormat.PlainText)
     made.setWordWrap(wrap)
+    made.setIndent(0)
     if role:
         made.setProperty("role", role)
     return made
 
 
-def line(name: str, tip: str) -> QLineEdit:
+def line(name: str, tip: str) -> Field:
     """Return a line to write in."""
-    made = QLineEdit()
+    made = Field()
     made.setAccessibleName(name)
     made.setToolTip(tip)
     return made

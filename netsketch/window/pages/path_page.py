@@ -15,6 +15,7 @@ from PySide6.QtWidgets import (
 
 from netsketch.model import Plan
 from netsketch.reports.words import delay_text, next_hops_text
+from netsketch.window.literal import as_tip
 from netsketch.window.pages.page import Page, label, short
 
 if TYPE_CHECKING:
@@ -138,7 +139,7 @@ def _fill(
         for column, cell in enumerate(cells):
             item = QTableWidgetItem(cell[:200])
             item.setFlags(_ITEM_FLAGS)
-            item.setToolTip(f"{cell[:400]}\nDouble-click goes to link {link[:100]}")
+            item.setToolTip(as_tip(f"{cell[:400]}\nDouble-click goes to link {link[:100]}"))
             item.setData(Qt.ItemDataRole.UserRole, link)
             table.setItem(row, column, item)
     table.resizeColumnsToContents()

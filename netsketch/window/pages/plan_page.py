@@ -54,6 +54,7 @@ class PlanPage(Page):
         ]
         words = [edits.counted(number, word) for number, word in parts if number]
         self.counts.setText(", ".join(words))
+        self.counts.setVisible(bool(words))
         self.advice.setText(_NEXT if len(plan.nodes) else _BEGIN)
         self.name.setText(plan.settings.name)
         self.cost_style.setCurrentIndex(self.cost_style.findData(plan.settings.cost_style))

@@ -7,6 +7,7 @@ from functools import partial
 from PySide6.QtWidgets import QCheckBox, QGridLayout, QScrollArea, QWidget
 
 from netsketch.model import edits
+from netsketch.window.literal import on_button
 from netsketch.window.pages.page import Page, button, form, label, line, short
 
 MOST_MEMBERS = 200
@@ -49,7 +50,7 @@ class SegmentPage(Page):
         links = self.plan.links_at(self._segment)
         for row, link in enumerate(links[:MOST_MEMBERS]):
             member = link.other_end(self._segment)
-            go = button(short(self.plan.nodes[member].label, 30), "Go to this router")
+            go = button(on_button(short(self.plan.nodes[member].label, 30)), "Go to this router")
             go.clicked.connect(partial(self.focus_asked.emit, ("router", member)))
             costs = edits.costs_in_trial(self.plan, link.id)
             grid.addWidget(go, row, 0)
