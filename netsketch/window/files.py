@@ -54,9 +54,11 @@ class Files(QObject):
             if path is not None:
                 self._read(path)
 
-    def open_path(self, path: Path) -> None:
-        """Open a file that was already chosen (recent, demo, command line)."""
-        if self.may_leave():
+    def open_path(self, path: Path | None) -> None:
+        """Open a file that was already chosen (recent, demo, command line); ``None`` asks."""
+        if path is None:
+            self.open()
+        elif self.may_leave():
             self._read(path)
 
     def _read(self, path: Path) -> None:

@@ -31,6 +31,7 @@ class Inspector(QStackedWidget):
     path_lit = Signal(object)
     path_asked = Signal(str, str)
     hint = Signal(str)
+    opened = Signal(object)
 
     def __init__(self, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -48,6 +49,7 @@ class Inspector(QStackedWidget):
             page.edited.connect(self.edited)
             page.focus_asked.connect(self.focus_asked)
             page.hint.connect(self.hint)
+        self.plan_page.opened.connect(self.opened)
         self.router_page.path_lit.connect(self.path_lit)
         self.router_page.path_asked.connect(self.path_asked)
         self.link_page.usage.pair_asked.connect(self.path_asked)

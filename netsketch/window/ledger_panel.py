@@ -57,8 +57,8 @@ class LedgerPanel(QWidget):
         self.against = QComboBox()
         self.against.setAccessibleName("What the trial is compared with")
         self.against.setToolTip("Compare the trial with the plan or with a kept trial")
-        self.least_cost = _least("extra cost from", "Least extra cost")
-        self.least_delay = _least("extra ms from", "Least extra delay in ms")
+        self.least_cost = _least("extra cost ≥", "Least extra cost")
+        self.least_delay = _least("extra ms ≥", "Least extra delay in ms")
         self.outcome = QComboBox()
         self.outcome.addItems(["every outcome", *OUTCOMES])
         self.outcome.setAccessibleName("Filter the ledger by outcome")
@@ -167,7 +167,7 @@ def _least(words: str, name: str) -> QLineEdit:
     field = QLineEdit()
     field.setPlaceholderText(words)
     field.setAccessibleName(name)
-    field.setMaximumWidth(110)
+    field.setFixedWidth(104)
     return field
 
 

@@ -22,8 +22,9 @@ from PySide6.QtWidgets import (
 from netsketch.session.jobs import Jobs
 from netsketch.sheet import Sheet
 from netsketch.window import actions, commands, kept_trials
+from netsketch.window.demos import demo_files
 from netsketch.window.desk import Desk, Focus
-from netsketch.window.files import Files, demo_files
+from netsketch.window.files import Files
 from netsketch.window.inspector import Inspector
 from netsketch.window.ledger_panel import LedgerPanel
 from netsketch.window.literal import as_tip, on_button
@@ -143,6 +144,7 @@ class MainWindow(QMainWindow):
         sheet.selection_changed.connect(self._show_selection)
         sheet.menu_asked.connect(self._show_menu)
         sheet.tool_changed.connect(self._show_tool)
+        self.inspector.opened.connect(self.files.open_path)
         self.inspector.focus_asked.connect(self.go_to)
         self.inspector.path_lit.connect(sheet.light_path)
         self.inspector.path_asked.connect(desk.set_pair)

@@ -85,6 +85,7 @@ def _style(look: Look) -> str:
         }}
         QLineEdit:focus {{ border: 2px solid {look.ink}; padding: 1px 3px; }}
         QLineEdit:disabled {{ border-color: {look.hairline}; }}
+        QCheckBox {{ spacing: 6px; }}
         QCheckBox::indicator {{
             width: 13px; height: 13px; border: 1px solid {look.soft}; border-radius: 3px;
             background: {look.plate};

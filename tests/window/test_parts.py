@@ -12,7 +12,7 @@ from pytestqt.qtbot import QtBot
 
 from netsketch.model import NodeState
 from netsketch.window import actions
-from netsketch.window.files import demo_files
+from netsketch.window.demos import demo_files
 from netsketch.window.settings import Settings
 from tests.demos import demo_path
 from tests.window.conftest import LEFT, Person

@@ -5,12 +5,19 @@ from __future__ import annotations
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QGuiApplication
-from PySide6.QtWidgets import QAbstractButton, QComboBox, QLineEdit, QTableView, QWidget
+from PySide6.QtWidgets import (
+    QAbstractButton,
+    QComboBox,
+    QLineEdit,
+    QPushButton,
+    QTableView,
+    QWidget,
+)
 from pytestqt.qtbot import QtBot
 
 from netsketch.window.settings import Settings
 from tests.demos import demo_path
-from tests.window.conftest import Person
+from tests.window.conftest import LEFT, Person
 
 pytestmark = pytest.mark.gui
 
@@ -102,3 +109,30 @@ def test_pairs_of_equal_senders_are_in_order_of_whom_they_reach(person: Person) 
         for row in range(model.rowCount())
     ]
     assert pairs == sorted(pairs)
+
+
+def test_an_empty_sheet_offers_ways_to_begin(person: Person, qtbot: QtBot) -> None:
+    page = person.window.inspector.plan_page
+    demo = next(b for b in page.findChildren(QPushButton) if b.text() == "Harbour campus (demo)")
+    qtbot.mouseClick(demo, LEFT)
+    person.settle()
+    assert len(person.plan.nodes) > 20
+    assert not page.ways.isVisible()
+    person.do("new")
+    assert page.ways.isVisible()
+    person.ask.path = demo_path("water-utility")
+    on_disk = next(b for b in page.findChildren(QPushButton) if b.text().startswith("A plan"))
+    qtbot.mouseClick(on_disk, LEFT)
+    person.settle()
+    assert len(person.plan.nodes) > 50
+
+
+def test_a_link_of_another_document_has_its_own_ends(person: Person) -> None:
+    usage = person.window.inspector.link_page.usage
+    for name in ("harbour-campus", "water-utility"):
+        person.open(demo_path(name))
+        person.window.go_to(("link", "l6"))
+        person.settle()
+        ends = [person.plan.nodes[end].label for end in person.plan.links["l6"].ends]
+        assert usage.direction.itemText(0) == " to ".join(ends)
+        assert usage.direction.itemText(1) == " to ".join(reversed(ends))

@@ -2,14 +2,18 @@
 
 from __future__ import annotations
 
-from PySide6.QtWidgets import QComboBox
+from functools import partial
+
+from PySide6.QtCore import Signal
+from PySide6.QtWidgets import QComboBox, QVBoxLayout, QWidget
 
 from netsketch.model import COST_RANGES, PlanError, edits
-from netsketch.window.pages.page import Page, form, label, line, short
+from netsketch.window.demos import demo_files
+from netsketch.window.pages.page import Page, button, form, label, line, short
 
 _BEGIN = (
     "Double-click on the sheet to draw a router, or take the Router tool. Drag from plate to "
-    "plate with the Link tool. Or open a plan, or a demo network, from the File menu."
+    "plate with the Link tool."
 )
 _NEXT = (
     "Click a router to read its routes. Select links or routers and press D to take them down "
@@ -18,12 +22,16 @@ _NEXT = (
 
 
 class PlanPage(Page):
-    """Counts and settings of the plan."""
+    """Counts and settings of the plan; where it is empty, ways to begin."""
+
+    opened = Signal(object)
+    """A file to open; ``None`` asks for one."""
 
     def __init__(self) -> None:
         super().__init__()
         self.counts = label("", wrap=True)
         self.advice = label("", "soft", wrap=True)
+        self.ways = self._ways_to_begin()
         self.name = line("Name of the plan", "Shown in the title and in records")
         self.cost_style = QComboBox()
         self.cost_style.setAccessibleName("Cost style")
@@ -36,9 +44,23 @@ class PlanPage(Page):
         fields.addRow("Name", self.name)
         fields.addRow("Cost style", self.cost_style)
         self.column.addLayout(fields)
+        self.column.addWidget(self.ways)
         self.column.addStretch(1)
         self.name.editingFinished.connect(self._rename)
         self.cost_style.activated.connect(self._change_style)
+
+    def _ways_to_begin(self) -> QWidget:
+        holder = QWidget()
+        column = QVBoxLayout(holder)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.addWidget(label("Or begin with", "heading"))
+        demos = [(f"{name} (demo)", path) for name, path in demo_files()]
+        for text, path in [("A plan or graph on disk…", None), *demos]:
+            tip = "Choose a file" if path is None else f"Open {path.name}"
+            way = button(text, tip)
+            way.clicked.connect(partial(self.opened.emit, path))
+            column.addWidget(way)
+        return holder
 
     def show_plan(self) -> None:
         """Show the plan."""
@@ -56,6 +78,7 @@ class PlanPage(Page):
         self.counts.setText(", ".join(words))
         self.counts.setVisible(bool(words))
         self.advice.setText(_NEXT if len(plan.nodes) else _BEGIN)
+        self.ways.setVisible(not len(plan.nodes))
         self.name.setText(plan.settings.name)
         self.cost_style.setCurrentIndex(self.cost_style.findData(plan.settings.cost_style))
         if self.answers is not None and not self.answers.keeps_all_pairs:

@@ -25,7 +25,8 @@ from netsketch.window.route_table import CHANGE, CSV_HEADER, RouteTable
 if TYPE_CHECKING:
     from netsketch.session.answers import Inward, Outward
 
-_WIDTHS = (110, 78, 30, 140, 48, 44, 74)
+_WIDTHS = (100, 74, 30, 140, 46, 42, 72)
+_NEXT_HOP = 3
 
 
 class RouterPage(Page):
@@ -64,6 +65,7 @@ class RouterPage(Page):
         fields.addRow("Name", self.name)
         fields.addRow("Site", self.site)
         states = QHBoxLayout()
+        states.setSpacing(16)
         states.addWidget(self.down)
         states.addWidget(self.drained)
         states.addStretch(1)
@@ -240,6 +242,6 @@ def _table(model: RouteTable) -> QTableView:
     header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
     for column, width in enumerate(_WIDTHS):
         table.setColumnWidth(column, width)
-    header.setStretchLastSection(True)
+    header.setSectionResizeMode(_NEXT_HOP, QHeaderView.ResizeMode.Stretch)
     table.sortByColumn(0, Qt.SortOrder.AscendingOrder)
     return table

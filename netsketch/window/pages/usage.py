@@ -17,6 +17,10 @@ if TYPE_CHECKING:
 MOST_LISTED = 500
 
 
+def _pairs(number: int) -> str:
+    return "1 pair" if number == 1 else f"{number:,} pairs"
+
+
 class Usage(QWidget):
     """The part of the link page that answers from all pairs."""
 
@@ -31,6 +35,7 @@ class Usage(QWidget):
         self._link = ""
         self.direction = QComboBox()
         self.direction.setAccessibleName("Direction")
+        self.direction.addItems(["", ""])
         self.count = label("", wrap=True)
         self.plot = StepPlot()
         self.plot.setToolTip("Click a cost to try it; arrow keys step from one to the next")
@@ -54,13 +59,14 @@ class Usage(QWidget):
     def show_waiting(self, plan: Plan, link: str) -> None:
         """Show that the answer about ``link`` is on its way."""
         self._tipping, self._plan = None, plan
+        ends = [short(plan.nodes[end].label, 24) for end in plan.links[link].ends]
+        self.direction.blockSignals(True)
+        for index, words in enumerate((" to ".join(ends), " to ".join(reversed(ends)))):
+            self.direction.setItemText(index, words)
         if link != self._link:
             self._link = link
-            self.direction.blockSignals(True)
-            self.direction.clear()
-            ends = [short(plan.nodes[end].label, 24) for end in plan.links[link].ends]
-            self.direction.addItems([f"{ends[0]} to {ends[1]}", f"{ends[1]} to {ends[0]}"])
-            self.direction.blockSignals(False)
+            self.direction.setCurrentIndex(0)
+        self.direction.blockSignals(False)
         self.count.setText("computing…")
 
     def show_tipping(self, tipping: tuple[Tipping, Tipping]) -> None:
@@ -81,7 +87,7 @@ class Usage(QWidget):
         using, sharing = found.using(cost), found.sharing(cost)
         share = 100 * using / max(routers * (routers - 1), 1)
         shared = f", {sharing:,} of them shared with equal-cost ways" if sharing else ""
-        self.count.setText(f"{using:,} pairs at cost {cost}{shared}: {share:.3g} % of all pairs")
+        self.count.setText(f"{_pairs(using)} at cost {cost}{shared}: {share:.3g} % of all pairs")
         steps = found.steps(highest)
         self.plot.setVisible(not leaves_segment)
         self.plot.show_steps(steps, found.using(highest + 1), highest, cost)
@@ -92,7 +98,7 @@ class Usage(QWidget):
         if self._tipping is None:
             return
         found = self._tipping[self.direction.currentIndex()]
-        text = f"At cost {cost:,}: {found.using(cost):,} pairs"
+        text = f"At cost {cost:,}: {_pairs(found.using(cost))}"
         if found.sharing(cost):
             leaving = found.pairs_at(cost)
             names = ", ".join(self._pair_name(pair) for pair in leaving[:3])
