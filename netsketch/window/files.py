@@ -19,14 +19,6 @@ from netsketch.window.questions import Questions
 from netsketch.window.relay import Relay
 from netsketch.window.settings import Settings
 
-DEMOS = Path(__file__).resolve().parents[2] / "demo_topologies"
-
-
-def demo_files() -> list[tuple[str, Path]]:
-    """Return the demo networks that came with the program: (name, file)."""
-    found = sorted(DEMOS.glob("*.netsketch.json"), key=lambda path: path.stat().st_size)
-    return [(path.name.split(".")[0].replace("-", " ").capitalize(), path) for path in found]
-
 
 class Files(QObject):
     """The File menu."""
