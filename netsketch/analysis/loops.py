@@ -10,7 +10,6 @@ from __future__ import annotations
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 
-import networkx as nx
 import numpy as np
 
 from netsketch.routing import Cancelled, Network, Sink, never
@@ -47,10 +46,11 @@ def loops_to(before: Network, after: Network, target: int) -> list[list[int]]:
     old, new = Sink(before, target), Sink(after, target)
     if np.array_equal(old.arcs, new.arcs):
         return []
-    graph = nx.DiGraph()
+    onward: dict[int, set[int]] = {}
     for sink in (old, new):
-        graph.add_edges_from(_handovers(sink))
-    return sorted(sorted(part) for part in nx.strongly_connected_components(graph) if len(part) > 1)
+        for router, hop in _handovers(sink):
+            onward.setdefault(router, set()).add(hop)
+    return cycles(onward)
 
 
 def _handovers(sink: Sink) -> Iterator[tuple[int, int]]:
@@ -64,3 +64,47 @@ def _handovers(sink: Sink) -> Iterator[tuple[int, int]]:
             else:
                 for b in sink.arcs[sink.ptr[head] : sink.ptr[head + 1]]:
                     yield u, int(s.head[b])
+
+
+def cycles(onward: dict[int, set[int]]) -> list[list[int]]:
+    """Return the sets of two or more vertices that reach each other, each sorted.
+
+    What nothing enters or nothing leaves is peeled off first, which leaves little; then two
+    vertices share a set when each is reachable from the other.
+    """
+    left = _peeled(_peeled(onward, backwards=True), backwards=False)
+    found = []
+    todo = set(left)
+    while todo:
+        start = todo.pop()
+        members = {v for v in _reachable(left, start) if start in _reachable(left, v)}
+        if len(members | {start}) > 1:
+            found.append(sorted(members | {start}))
+        todo -= members
+    return sorted(found)
+
+
+def _peeled(onward: dict[int, set[int]], *, backwards: bool) -> dict[int, set[int]]:
+    """Return the graph without what leads nowhere (``backwards``: what nobody leads to)."""
+    kept = {u: set(heads) for u, heads in onward.items()}
+    while True:
+        if backwards:
+            entered = {v for heads in kept.values() for v in heads}
+            bare = kept.keys() - entered
+        else:
+            bare = {v for heads in kept.values() for v in heads if not kept.get(v)}
+            bare |= {u for u, heads in kept.items() if not heads}
+        if not bare:
+            return kept
+        kept = {u: heads - bare for u, heads in kept.items() if u not in bare}
+
+
+def _reachable(onward: dict[int, set[int]], start: int) -> set[int]:
+    seen: set[int] = set()
+    ahead = [start]
+    while ahead:
+        for v in onward.get(ahead.pop(), ()):
+            if v not in seen:
+                seen.add(v)
+                ahead.append(v)
+    return seen

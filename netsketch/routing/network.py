@@ -7,6 +7,7 @@ same structure can be compared arc by arc, and next-hop sets bit by bit.
 
 from __future__ import annotations
 
+import hashlib
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field, replace
 from functools import cached_property
@@ -170,6 +171,16 @@ class Network:
             transit = np.where(self.drained[s.tail], BLOCKED, weight)
         object.__setattr__(self, "weight", weight)
         object.__setattr__(self, "transit", transit)
+
+    @cached_property
+    def fingerprint(self) -> str:
+        """Return what tells apart networks that route differently: equal for equal ones."""
+        s, digest = self.structure, hashlib.sha256()
+        for part in (repr((s.vertex_ids, s.routers, s.link_ids)).encode(), s.ends().tobytes()):
+            digest.update(part)
+        for array in (self.weight, self.transit, self.delay, self.capacity):
+            digest.update(array.tobytes())
+        return digest.hexdigest()
 
     @property
     def distance_type(self) -> type[np.int32] | type[np.int64]:

@@ -52,6 +52,7 @@ ENTRIES: tuple[Entry, ...] = (
     Entry("full_size", "View", "Full size", "Show the sheet at 100 %", "Ctrl+0"),
     Entry("fit", "View", "Fit the plan", "Show the whole plan", "F"),
     Entry("ledger", "View", "Ledger", "Show every pair that the trial changes", "L", "switch"),
+    Entry("survey", "View", "Survey", "Show what every failure of a kind does", "W", "switch"),
     Entry("look_system", "View", "As the system", "Light or dark as the system is", "", "look"),
     Entry("look_light", "View", "Paper and ink", "Light", "", "look"),
     Entry("look_dark", "View", "Graphite and chalk", "Dark", "", "look"),

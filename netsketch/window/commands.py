@@ -13,6 +13,7 @@ from netsketch.window import actions
 from netsketch.window.record import write_record
 
 if TYPE_CHECKING:
+    from netsketch.analysis.survey import Failure
     from netsketch.window.main_window import MainWindow
 
 _STEP = 1.25
@@ -40,6 +41,7 @@ def handlers(window: MainWindow) -> dict[str, Callable[[], object]]:
         "full_size": partial(sheet.zoom_to, 1.0),
         "fit": sheet.fit,
         "ledger": window.toggle_ledger,
+        "survey": window.toggle_survey,
         "toggle_down": partial(_toggle_down, w),
         "toggle_drained": partial(_toggle_drained, w),
         "drain_by_cost": partial(_drain_by_cost, w),
@@ -61,6 +63,18 @@ def handlers(window: MainWindow) -> dict[str, Callable[[], object]]:
 
 LOOKS = ("system", "light", "dark")
 TOOLS = ("select", "router", "segment", "link")
+
+
+def try_failure(window: MainWindow, failure: Failure) -> None:
+    """Put a surveyed failure into the trial."""
+    from netsketch.analysis.survey_load import as_trial
+
+    plan = window.desk.document.plan
+    name = window.survey.model.name_of(failure)
+    try:
+        window.desk.apply(edits.try_changes(plan, as_trial(failure).changes, f"try {name} down"))
+    except PlanError:
+        window.hint("The plan no longer has what failed there: survey it again")
 
 
 def _delete(window: MainWindow) -> None:

@@ -26,12 +26,14 @@ from netsketch.window.demos import demo_files
 from netsketch.window.desk import Desk, Focus
 from netsketch.window.files import Files
 from netsketch.window.inspector import Inspector
-from netsketch.window.ledger_panel import LedgerPanel
+from netsketch.window.ledger_panel import LedgerPanel, totals_text
 from netsketch.window.literal import as_tip, on_button
 from netsketch.window.notice import Notice
 from netsketch.window.questions import Questions
 from netsketch.window.relay import Relay
 from netsketch.window.settings import Settings
+from netsketch.window.survey_panel import SurveyPanel
+from netsketch.window.surveys import Surveys
 from netsketch.window.theme import apply_look, look_named
 from netsketch.window.trial_strip import TrialStrip
 
@@ -61,6 +63,8 @@ class MainWindow(QMainWindow):
         self.sheet = Sheet()
         self.inspector = Inspector()
         self.ledger = LedgerPanel(self.ask)
+        self.surveys = Surveys(self.desk, self)
+        self.survey = SurveyPanel(self.surveys, self.ask)
         self.strip = TrialStrip()
         self.notice = Notice()
         self.state, self.files_state = _state_label(), _state_label()
@@ -72,6 +76,7 @@ class MainWindow(QMainWindow):
         self.restoreGeometry(self.settings.bytes_of("geometry"))
         self.restoreState(self.settings.bytes_of("state"))
         self.ledger_dock.hide()
+        self.survey_dock.hide()
         self._show_document()
         self._show_selection()
         self._show_tool("select")
@@ -89,6 +94,7 @@ class MainWindow(QMainWindow):
         self.setCentralWidget(middle)
         self.inspector_dock = self._dock("Inspector", self.inspector, _RIGHT)
         self.ledger_dock = self._dock("Ledger", self.ledger, _BOTTOM)
+        self.survey_dock = self._dock("Survey", self.survey, _BOTTOM)
         self.setCorner(Qt.Corner.BottomRightCorner, _RIGHT)
         self.resizeDocks([self.inspector_dock], [500], Qt.Orientation.Horizontal)
         self.resizeDocks([self.ledger_dock], [260], Qt.Orientation.Vertical)
@@ -128,7 +134,7 @@ class MainWindow(QMainWindow):
             ("toggle_down", "toggle_drained", "try_cost"),
             ("outward", "inward", "effect"),
             ("undo", "redo"),
-            ("fit", "ledger"),
+            ("fit", "ledger", "survey"),
         ):
             bar.addActions([self.actions_by_id[key] for key in group])
             bar.addSeparator()
@@ -138,7 +144,7 @@ class MainWindow(QMainWindow):
         sheet, desk = self.sheet, self.desk
         for edited in (sheet.edited, self.inspector.edited, self.strip.edited):
             edited.connect(desk.apply)
-        for hint in (sheet.hint, self.inspector.hint, self.ledger.hint):
+        for hint in (sheet.hint, self.inspector.hint, self.ledger.hint, self.survey.hint):
             hint.connect(self.hint)
         sheet.focus_asked.connect(desk.set_focus)
         sheet.selection_changed.connect(self._show_selection)
@@ -150,6 +156,8 @@ class MainWindow(QMainWindow):
         self.inspector.path_asked.connect(desk.set_pair)
         self.ledger.pair_asked.connect(partial(desk.set_pair, changed=True))
         self.ledger.baseline_asked.connect(desk.set_baseline)
+        self.surveys.failure_shown.connect(self._show_failure)
+        self.survey.tried.connect(partial(commands.try_failure, self))
         desk.tipping_changed.connect(self._show_tipping)
         self.strip.ledger_asked.connect(self.toggle_ledger)
         desk.document_changed.connect(self._show_document)
@@ -172,6 +180,7 @@ class MainWindow(QMainWindow):
 
     def _show_document(self) -> None:
         self.notice.hide()
+        self.surveys.forget()
         self.sheet.set_document(self.desk.document)
         self.inspector.set_document(self.desk.document, self.desk.answers)
         self._show_plan()
@@ -182,6 +191,7 @@ class MainWindow(QMainWindow):
         self.setWindowTitle(f"{title}[*] – netsketch")
         self.setWindowModified(document.is_modified)
         self.strip.show_trial(document.plan)
+        self.survey.show_plan(document.plan)
         self.inspector.refresh()
         for key, label in (("undo", document.undo_label), ("redo", document.redo_label)):
             action = self.actions_by_id[key]
@@ -250,7 +260,21 @@ class MainWindow(QMainWindow):
             self.strip.show_totals("computing…")
             return
         self.ledger.set_ledger(desk.ledger, desk.document.plan)
-        self.strip.show_totals(_totals(desk.ledger) if desk.compares else "")
+        asked = desk.compares and desk.ledger is not None
+        self.strip.show_totals(f"{totals_text(desk.ledger)} of all pairs" if asked else "")
+
+    def _show_failure(self) -> None:
+        """Show the ledger of a surveyed failure, and whom it concerns on the sheet."""
+        from netsketch.readings.failure import failure
+
+        failed, ledger = self.surveys.failure, self.surveys.ledger
+        if failed is None or ledger is None:
+            return
+        self.ledger.set_ledger(ledger, self.desk.document.plan)
+        self.ledger_dock.show()
+        self.actions_by_id["ledger"].setChecked(True)
+        label = self.survey.model.name_of(failed)
+        self.sheet.set_reading(failure(ledger, failed.links, failed.nodes, label))
 
     def _show_tool(self, tool: str) -> None:
         self.actions_by_id[f"tool_{tool}"].setChecked(True)
@@ -298,6 +322,11 @@ class MainWindow(QMainWindow):
         self.ledger_dock.setVisible(not self.ledger_dock.isVisible())
         self.actions_by_id["ledger"].setChecked(self.ledger_dock.isVisible())
 
+    def toggle_survey(self) -> None:
+        """Show or hide the survey."""
+        self.survey_dock.setVisible(not self.survey_dock.isVisible())
+        self.actions_by_id["survey"].setChecked(self.survey_dock.isVisible())
+
     def closeEvent(self, event: QCloseEvent) -> None:
         if not self.files.may_leave():
             event.ignore()
@@ -305,6 +334,7 @@ class MainWindow(QMainWindow):
         self.settings.keep_bytes("geometry", self.saveGeometry())
         self.settings.keep_bytes("state", self.saveState())
         self.hide()  # a routing core that is being compiled can not be told to stop
+        self.surveys.close()
         for jobs in (self.jobs, self.writing_jobs, self.core_jobs):
             jobs.close()
         super().closeEvent(event)
@@ -316,10 +346,3 @@ def _state_label() -> QLabel:
     return made
 
 
-def _totals(ledger: Ledger | None) -> str:
-    if ledger is None:
-        return ""
-    words = [f"{ledger.moved:,} moved", f"{ledger.cut_off:,} cut off"]
-    if ledger.restored:
-        words.append(f"{ledger.restored:,} restored")
-    return ", ".join(words) + " of all pairs"

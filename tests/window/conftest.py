@@ -111,7 +111,7 @@ class Person:
 def person(qtbot: QtBot) -> Iterator[Person]:
     window = MainWindow()
     answering = Answering()
-    window.ask = window.files.ask = window.ledger._ask = answering  # type: ignore[assignment]
+    window.ask = window.files.ask = window.ledger._ask = window.survey._ask = answering  # type: ignore[assignment]
     qtbot.addWidget(window)
     window.resize(1400, 900)
     window.show()
