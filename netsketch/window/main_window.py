@@ -5,7 +5,6 @@
 from __future__ import annotations
 
 from functools import partial
-from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QPoint, Qt
 from PySide6.QtGui import QCloseEvent, QGuiApplication
@@ -36,9 +35,6 @@ from netsketch.window.survey_panel import SurveyPanel
 from netsketch.window.surveys import Surveys
 from netsketch.window.theme import apply_look, look_named
 from netsketch.window.trial_strip import TrialStrip
-
-if TYPE_CHECKING:
-    from netsketch.analysis.ledger import Ledger
 
 WRITING = ("record", "picture", "copy")
 """Jobs that write files, for which nothing else waits."""
@@ -95,6 +91,7 @@ class MainWindow(QMainWindow):
         self.inspector_dock = self._dock("Inspector", self.inspector, _RIGHT)
         self.ledger_dock = self._dock("Ledger", self.ledger, _BOTTOM)
         self.survey_dock = self._dock("Survey", self.survey, _BOTTOM)
+        self.tabifyDockWidget(self.ledger_dock, self.survey_dock)
         self.setCorner(Qt.Corner.BottomRightCorner, _RIGHT)
         self.resizeDocks([self.inspector_dock], [500], Qt.Orientation.Horizontal)
         self.resizeDocks([self.ledger_dock], [260], Qt.Orientation.Vertical)
@@ -260,8 +257,8 @@ class MainWindow(QMainWindow):
             self.strip.show_totals("computing…")
             return
         self.ledger.set_ledger(desk.ledger, desk.document.plan)
-        asked = desk.compares and desk.ledger is not None
-        self.strip.show_totals(f"{totals_text(desk.ledger)} of all pairs" if asked else "")
+        ledger = desk.ledger if desk.compares else None
+        self.strip.show_totals("" if ledger is None else f"{totals_text(ledger)} of all pairs")
 
     def _show_failure(self) -> None:
         """Show the ledger of a surveyed failure, and whom it concerns on the sheet."""
@@ -325,6 +322,7 @@ class MainWindow(QMainWindow):
     def toggle_survey(self) -> None:
         """Show or hide the survey."""
         self.survey_dock.setVisible(not self.survey_dock.isVisible())
+        self.survey_dock.raise_()
         self.actions_by_id["survey"].setChecked(self.survey_dock.isVisible())
 
     def closeEvent(self, event: QCloseEvent) -> None:
@@ -344,5 +342,3 @@ def _state_label() -> QLabel:
     made = QLabel()
     made.setTextFormat(Qt.TextFormat.PlainText)
     return made
-
-

@@ -57,6 +57,7 @@ class SurveyPanel(QWidget):
         self.progress = QProgressBar()
         self.progress.setAccessibleName("Progress of the survey")
         self.progress.setRange(0, 1000)
+        self.progress.setMaximumWidth(160)
         self.state = QLabel()
         self.try_it = _button("Try it", "Put the chosen failure into the trial")
         self.save = _button("Save as CSV…", "Write the table to a file")
@@ -72,7 +73,7 @@ class SurveyPanel(QWidget):
         title.setProperty("role", "heading")
         for widget in (title, self.kind, self.start, self.cancel, self.progress):
             top.addWidget(widget)
-        top.addWidget(self.state, 1)
+        top.addStretch(1)
         top.addWidget(self.try_it)
         top.addWidget(self.save)
         below = QHBoxLayout()
@@ -81,6 +82,7 @@ class SurveyPanel(QWidget):
         column = QVBoxLayout(self)
         column.setContentsMargins(12, 4, 12, 8)
         column.addLayout(top)
+        column.addWidget(self.state)
         column.addLayout(below, 1)
 
     def _connect(self) -> None:
