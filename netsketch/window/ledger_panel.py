@@ -64,8 +64,8 @@ class LedgerPanel(QWidget):
         self.outcome.setAccessibleName("Filter the ledger by outcome")
         self.copy = QPushButton("Copy as CSV")
         self.copy.setToolTip("Copy the rows shown to the clipboard")
-        self.export = QPushButton("Save as CSV…")
-        self.export.setToolTip("Write the rows shown to a file")
+        self.export = QPushButton("Save…")
+        self.export.setToolTip("Write the rows shown to a CSV file")
         self.table = _table(self.model)
         self._lay_out()
         self.filter.textChanged.connect(self._refilter)
@@ -85,14 +85,17 @@ class LedgerPanel(QWidget):
         title.setProperty("role", "name")
         top.addWidget(title)
         top.addWidget(self.totals, 1)
-        for widget in (
-            self.against, self.filter, self.outcome, self.least_cost, self.least_delay, self.copy,
-            self.export,
-        ):  # fmt: skip
-            top.addWidget(widget)
+        top.addWidget(self.copy)
+        top.addWidget(self.export)
+        below = QHBoxLayout()
+        below.addWidget(self.against)
+        below.addWidget(self.filter, 1)
+        for widget in (self.outcome, self.least_cost, self.least_delay):
+            below.addWidget(widget)
         column = QVBoxLayout(self)
         column.setContentsMargins(12, 4, 12, 8)
         column.addLayout(top)
+        column.addLayout(below)
         column.addWidget(self.table, 1)
 
     def set_ledger(self, ledger: Ledger | None, plan: Plan) -> None:
@@ -128,11 +131,8 @@ class LedgerPanel(QWidget):
         elif not len(ledger):
             self.totals.setText("The trial changes no pair of routers.")
         else:
-            shown = "" if rows == len(ledger) else f"{rows:,} shown of "
-            self.totals.setText(
-                f"{shown}{len(ledger):,} pairs: {ledger.moved:,} moved, "
-                f"{ledger.cut_off:,} cut off, {ledger.restored:,} restored"
-            )
+            shown = "" if rows == len(ledger) else f"{rows:,} of {len(ledger):,} pairs: "
+            self.totals.setText(shown + totals_text(ledger))
 
     def _refilter(self) -> None:
         self._writer.stop()
@@ -163,11 +163,19 @@ class LedgerPanel(QWidget):
             self._writer.start(self.model.rowCount(), path)
 
 
+def totals_text(ledger: Ledger) -> str:
+    """Return how many pairs a trial changes, by outcome."""
+    words = [f"{ledger.moved:,} moved", f"{ledger.cut_off:,} cut off"]
+    if ledger.restored:
+        words.append(f"{ledger.restored:,} restored")
+    return ", ".join(words)
+
+
 def _least(words: str, name: str) -> QLineEdit:
     field = QLineEdit()
     field.setPlaceholderText(words)
     field.setAccessibleName(name)
-    field.setFixedWidth(104)
+    field.setFixedWidth(96)
     return field
 
 

@@ -14,11 +14,11 @@ from PySide6.QtWidgets import (
     QHBoxLayout,
     QHeaderView,
     QLabel,
-    QTableView,
 )
 
 from netsketch.model import Router, edits
 from netsketch.reports.tables import csv_text
+from netsketch.window.filling_table import FillingTable
 from netsketch.window.pages.page import Page, button, form, label, line, short
 from netsketch.window.route_table import CHANGE, CSV_HEADER, RouteTable
 
@@ -26,7 +26,7 @@ if TYPE_CHECKING:
     from netsketch.session.answers import Inward, Outward
 
 _WIDTHS = (100, 74, 30, 140, 46, 42, 72)
-_NEXT_HOP = 3
+_NEXT_HOP, _LEAST_NEXT_HOP = 3, 110
 
 
 class RouterPage(Page):
@@ -128,7 +128,7 @@ class RouterPage(Page):
         self.heading.setText("Forwarding table")
         self.table_model.show(outward, self.plan)
         changed = outward is not None and bool(outward.changed)
-        self.table.setColumnHidden(CHANGE, not changed)
+        self.table.show_column(CHANGE, changed)
         self._show_count(outward is None)
         row = self.table_model.row_of(chosen) if chosen else None
         if row is not None:
@@ -138,7 +138,7 @@ class RouterPage(Page):
         """Show every router's way to this one."""
         self.heading.setText("How everyone reaches it")
         self.table_model.show_ways(inward, self.plan)
-        self.table.setColumnHidden(CHANGE, True)
+        self.table.show_column(CHANGE, False)
         self._show_count()
 
     def _show_count(self, waiting: bool = False) -> None:
@@ -224,8 +224,8 @@ class RouterPage(Page):
         self.hint.emit(f"{len(rows):,} rows copied as CSV")
 
 
-def _table(model: RouteTable) -> QTableView:
-    table = QTableView()
+def _table(model: RouteTable) -> FillingTable:
+    table = FillingTable(_NEXT_HOP, _LEAST_NEXT_HOP)
     table.setModel(model)
     table.setAccessibleName("Forwarding table")
     table.setSortingEnabled(True)
@@ -242,6 +242,5 @@ def _table(model: RouteTable) -> QTableView:
     header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
     for column, width in enumerate(_WIDTHS):
         table.setColumnWidth(column, width)
-    header.setSectionResizeMode(_NEXT_HOP, QHeaderView.ResizeMode.Stretch)
     table.sortByColumn(0, Qt.SortOrder.AscendingOrder)
     return table
