@@ -26,6 +26,8 @@ class Files(QObject):
     noted = Signal(str)
     """What an import assumed or left out, or a save could not carry."""
     recent_changed = Signal()
+    came = Signal()
+    """A file to open was read, or is about to be refused."""
     state_changed = Signal(str)
 
     def __init__(
@@ -65,6 +67,7 @@ class Files(QObject):
 
     def _opened(self, path: Path, left: tuple[Document, int], result: Any) -> None:
         self.state_changed.emit("")
+        self.came.emit()
         if isinstance(result, FormatError):
             self._settings.drop_recent(path)
             self.recent_changed.emit()

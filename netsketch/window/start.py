@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 import sys
+from functools import partial
 from pathlib import Path
 
-from PySide6.QtCore import QTimer
+from PySide6.QtCore import Qt, QTimer
 from PySide6.QtWidgets import QApplication
 
 from netsketch.window.main_window import MainWindow
@@ -26,7 +27,11 @@ def open_window(file: Path | None) -> int:
 
 
 def begin(window: MainWindow, file: Path | None) -> None:
-    """Open the file that was asked for and load the routing core."""
-    if file is not None:
-        window.files.open_path(file)
-    window.desk.load_core()
+    """Open the file that was asked for, then load the routing core: at the same time both
+    would come late."""
+    if file is None:
+        window.desk.load_core()
+        return
+    load_next = partial(QTimer.singleShot, 0, window.desk.load_core)
+    window.files.came.connect(load_next, Qt.ConnectionType.SingleShotConnection)
+    window.files.open_path(file)
