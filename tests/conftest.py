@@ -9,6 +9,10 @@ from pathlib import Path
 
 import pytest
 
+from tests import examples
+
+examples.register()
+
 if not os.environ.get("NETSKETCH_TEST_DISPLAY"):
     os.environ["QT_QPA_PLATFORM"] = "offscreen"
 
@@ -17,6 +21,16 @@ _HARMLESS = (
     "This plugin does not support raise()",
 )
 """What the offscreen platform says of every window."""
+
+
+def pytest_collection_modifyitems(config: pytest.Config, items: list[pytest.Item]) -> None:
+    """Leave the slow tests out unless ``-m`` speaks of them."""
+    if "slow" in config.option.markexpr:
+        return
+    slow = [item for item in items if item.get_closest_marker("slow")]
+    if slow:
+        config.hook.pytest_deselected(items=slow)
+        items[:] = [item for item in items if not item.get_closest_marker("slow")]
 
 
 def _needs_qt(request: pytest.FixtureRequest) -> bool:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import networkx as nx
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.analysis.cover import (
     NOTHING,
@@ -17,6 +17,7 @@ from netsketch.analysis.cover import (
 from netsketch.model import Plan, Segment
 from netsketch.routing import AllPairs, NextHop, compile_plan
 from tests import open_data, reference, strategies
+from tests.examples import examples
 from tests.published import plan_of
 
 
@@ -257,7 +258,7 @@ def assert_as_defined(plan: Plan) -> None:
                 assert found == by_definition(plan, s.vertex_ids[v], s.vertex_ids[t])
 
 
-@settings(deadline=None, max_examples=200)
+@examples(200)
 @given(plan=strategies.plans(style="ospf", max_nodes=5, max_links=9, with_trial=False))
 def test_alternates_are_what_the_inequalities_say(plan: Plan) -> None:
     assert_as_defined(plan)

@@ -2,17 +2,18 @@
 
 from __future__ import annotations
 
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.analysis import forwarding_table
 from netsketch.analysis.inward import demand_on_arcs, inward_table
 from netsketch.model import Plan
 from netsketch.routing import Routes, Sink, compile_plan
 from tests import strategies
+from tests.examples import examples
 from tests.published import rfc2328_figure_2
 
 
-@settings(deadline=None, max_examples=60)
+@examples(60)
 @given(plan=strategies.plans(max_nodes=7, with_trial=False))
 def test_ways_in_are_the_ways_out_of_the_others(plan: Plan) -> None:
     network = compile_plan(plan)
@@ -34,7 +35,7 @@ def test_ways_in_are_the_ways_out_of_the_others(plan: Plan) -> None:
                     assert abs(mine - other) < 1e-9 * max(1.0, other)
 
 
-@settings(deadline=None, max_examples=40)
+@examples(40)
 @given(plan=strategies.plans(max_nodes=7, with_trial=False))
 def test_demand_arrives_whole(plan: Plan) -> None:
     network = compile_plan(plan)

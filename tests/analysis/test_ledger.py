@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 import numpy as np
-from hypothesis import given, settings
+from hypothesis import given
 from hypothesis import strategies as st
 
 from netsketch.analysis import Ledger, changed_destinations, compare, compare_networks
 from netsketch.model import ChangeTrial, Edit, LinkState, NodeState, Plan, Trial
 from netsketch.routing import AllPairs, Routes, compile_plan
 from tests import reference, strategies
+from tests.examples import examples
 from tests.published import plan_of
 
 
@@ -22,7 +23,7 @@ def ledger_of(plan: Plan, trial: Trial) -> Ledger:
     return compare(before, after)
 
 
-@settings(deadline=None, max_examples=60)
+@examples(60)
 @given(plan=strategies.plans(with_trial=False, max_nodes=7), data=st.data())
 def test_ledger_is_what_the_definition_says(plan: Plan, data: st.DataObject) -> None:
     if not len(plan.nodes):
@@ -54,7 +55,7 @@ def test_ledger_is_what_the_definition_says(plan: Plan, data: st.DataObject) -> 
         assert ledger.after[index] == (-1 if row.cost_after is None else row.cost_after)
 
 
-@settings(deadline=None, max_examples=30)
+@examples(30)
 @given(plan=strategies.plans(max_nodes=7))
 def test_without_kept_distances_the_ledger_is_the_same(plan: Plan) -> None:
     before = compile_plan(plan)
@@ -62,7 +63,7 @@ def test_without_kept_distances_the_ledger_is_the_same(plan: Plan) -> None:
     assert list(compare_networks(before, after)) == list(ledger_of(plan, plan.trial))
 
 
-@settings(deadline=None, max_examples=30)
+@examples(30)
 @given(plan=strategies.plans(max_nodes=7))
 def test_changed_destinations_are_the_ledgers_rows(plan: Plan) -> None:
     before = compile_plan(plan)

@@ -5,12 +5,13 @@ from __future__ import annotations
 from fractions import Fraction
 
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.analysis.load import demands_by_target, load, load_of
 from netsketch.model import Demand, Plan, edits
 from netsketch.routing import compile_plan
 from tests import open_data, strategies
+from tests.examples import examples
 from tests.routing.test_routes import shares_by_definition, tight_graph
 
 
@@ -29,7 +30,7 @@ def by_definition(plan: Plan) -> tuple[dict[tuple[str, str], Fraction], float]:
     return found, lost
 
 
-@settings(deadline=None, max_examples=100)
+@examples(100)
 @given(plan=strategies.plans(max_nodes=8, with_trial=False))
 def test_load_is_the_sum_of_the_shares(plan: Plan) -> None:
     found = load_of(plan, compile_plan(plan))

@@ -6,13 +6,14 @@ from itertools import pairwise
 
 import networkx as nx
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.analysis.loops import loops
 from netsketch.model import LinkCost, LinkState, Plan, Trial
 from netsketch.routing import compile_plan
 from tests import open_data, reference, strategies
 from tests.analysis.test_cover import FIGURE_6571_1, MESH, SQUARE, TRIANGLE
+from tests.examples import examples
 from tests.published import plan_of
 
 
@@ -109,7 +110,7 @@ def assert_as_defined(plan: Plan, trial: Trial) -> None:
     assert sets == by_definition(plan, trial)
 
 
-@settings(deadline=None, max_examples=200)
+@examples(200)
 @given(plan=strategies.plans(max_nodes=6, max_links=9, with_trial=False))
 def test_loops_on_random_plans(plan: Plan) -> None:
     for link in plan.links.keys()[:3]:

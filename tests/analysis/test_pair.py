@@ -4,12 +4,13 @@ from __future__ import annotations
 
 import networkx as nx
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.analysis import pair
 from netsketch.model import LinkState, Plan, Segment, Trial
 from netsketch.routing import Network, NextHop, Routes, compile_plan
 from tests import open_data, reference, strategies
+from tests.examples import examples
 from tests.published import plan_of
 
 
@@ -35,7 +36,7 @@ def best_other_way(plan: Plan, source: str, target: str) -> int | None:
     return min(costs, default=None)
 
 
-@settings(deadline=None, max_examples=60)
+@examples(60)
 @given(plan=strategies.plans(max_nodes=6, max_links=9, with_trial=False))
 def test_the_other_way_is_the_best_that_starts_otherwise(plan: Plan) -> None:
     network = compile_plan(plan)
@@ -53,7 +54,7 @@ def test_the_other_way_is_the_best_that_starts_otherwise(plan: Plan) -> None:
                 assert not set(found.next_hops) & set(routes.next_hops(v))
 
 
-@settings(deadline=None, max_examples=60)
+@examples(60)
 @given(plan=strategies.plans(max_nodes=6, max_links=9, with_trial=False))
 def test_hops_add_up_and_failures_are_recomputed(plan: Plan) -> None:
     network = compile_plan(plan)

@@ -6,13 +6,14 @@ import threading
 
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.analysis import Failure, Survey, failures_of, survey
 from netsketch.analysis.survey import KINDS
 from netsketch.model import LinkState, NodeState, Plan, Trial
 from netsketch.routing import Cancelled, compile_plan
 from tests import open_data, reference, strategies
+from tests.examples import examples
 from tests.published import plan_of
 
 
@@ -38,7 +39,7 @@ def assert_as_defined(plan: Plan, found: Survey) -> None:
         assert totals == totals_by_definition(plan, failure), failure
 
 
-@settings(deadline=None, max_examples=200)
+@examples(200)
 @given(plan=strategies.plans(with_trial=False, max_nodes=7, max_links=10))
 def test_totals_on_random_plans(plan: Plan) -> None:
     network = compile_plan(plan)

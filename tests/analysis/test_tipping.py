@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 from hypothesis import strategies as st
 
 from netsketch.analysis.tipping import ALWAYS, tipping
 from netsketch.model import COST_RANGES, Plan, Segment, edits
 from netsketch.routing import AllPairs, Routes, compile_plan
 from tests import strategies
+from tests.examples import examples
 from tests.published import plan_of
 
 HIGHEST = COST_RANGES["isis-narrow"][1]
@@ -41,7 +42,7 @@ def sweep(plan: Plan, link: str, back: bool) -> dict[tuple[str, str], dict[int, 
     return found
 
 
-@settings(deadline=None, max_examples=25)
+@examples(25)
 @given(
     plan=strategies.plans(style="isis-narrow", max_nodes=5, max_links=8, with_trial=False),
     data=st.data(),

@@ -5,15 +5,16 @@ from __future__ import annotations
 import networkx as nx
 import numpy as np
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.model import Plan
 from netsketch.routing import Routes, Sink, compile_plan
 from tests import strategies
+from tests.examples import examples
 from tests.routing.test_routes import tight_graph
 
 
-@settings(deadline=None, max_examples=60)
+@examples(60)
 @given(plan=strategies.plans(max_nodes=7, max_links=11, with_trial=False))
 def test_a_sink_is_what_every_source_sees(plan: Plan) -> None:
     network = compile_plan(plan)
@@ -43,7 +44,7 @@ def test_a_sink_is_what_every_source_sees(plan: Plan) -> None:
         assert counts.tolist() == expected.tolist()
 
 
-@settings(deadline=None, max_examples=60)
+@examples(60)
 @given(plan=strategies.plans(max_nodes=8, with_trial=False))
 def test_flow_is_conserved_at_every_vertex(plan: Plan) -> None:
     network = compile_plan(plan)

@@ -17,6 +17,7 @@ from netsketch.formats import native
 from netsketch.model import Edit, LinkState, Plan, Router, Trial, edits
 from netsketch.routing import BLOCKED, AllPairs, Network, Routes, compile_plan
 from tests import reference, strategies
+from tests.examples import examples
 from tests.published import plan_of
 
 
@@ -126,10 +127,7 @@ class RandomChanges(RuleBasedStateMachine):
 
 TestRandomChanges = RandomChanges.TestCase
 TestRandomChanges.settings = settings(
-    max_examples=500 if settings.get_current_profile_name() == "long" else 40,
-    stateful_step_count=32,
-    deadline=None,
-    suppress_health_check=list(HealthCheck),
+    examples(40), stateful_step_count=32, suppress_health_check=list(HealthCheck)
 )
 
 

@@ -7,12 +7,13 @@ from fractions import Fraction
 
 import networkx as nx
 import pytest
-from hypothesis import given, settings
+from hypothesis import given
 
 from netsketch.model import Plan, Segment, edits
 from netsketch.routing import NextHop, Routes, compile_plan
 from netsketch.routing.derive import MANY
 from tests import reference, strategies
+from tests.examples import examples
 from tests.published import plan_of
 
 Walk = list[tuple[str, str, str]]
@@ -66,7 +67,7 @@ def shares_by_definition(
     return share
 
 
-@settings(deadline=None, max_examples=60)
+@examples(60)
 @given(plan=strategies.plans(max_nodes=7, max_links=11, with_trial=False))
 def test_along_the_paths(plan: Plan) -> None:
     network = compile_plan(plan)
