@@ -19,6 +19,8 @@ COMMANDS: Final = {
     "path": "the equal-cost paths between two routers, and the way back",
     "trial": "every pair of routers that failures or cost changes move or cut off",
     "survey": "every failure of a kind, ranked by what it does",
+    "load": "what every link carries of the demands",
+    "cover": "what loop-free alternates protect (RFC 5286, RFC 7490)",
     "record": "the change record of failures or cost changes, to attach to a change ticket",
     "picture": "a picture of the plan, bare or with a reading",
     "convert": "the plan in another file format",

@@ -58,7 +58,9 @@ def test_text_and_csv(run: Run, saved: Callable[[Plan], Path]) -> None:
     assert run(*words).out == (
         "Failures of links, the worst first\n"
         "\n"
-        "failed  moved  cut off  worst extra cost\n"
-        "a-b         0        2                 –\n"
+        "failed  moved  cut off  worst extra cost  worst utilisation\n"
+        "a-b         0        2                 –                  –\n"
     )
-    assert run(*words, "--as", "csv").out == "failed,moved,cut off,worst extra cost\na-b,0,2,\n"
+    assert run(*words, "--as", "csv").out == (
+        "failed,moved,cut off,worst extra cost,worst utilisation\na-b,0,2,,\n"
+    )
