@@ -9,6 +9,7 @@ from __future__ import annotations
 import importlib.resources
 import json
 import random
+from functools import cache
 from pathlib import Path
 from typing import Any
 
@@ -19,13 +20,16 @@ from netsketch.model import Link, Plan, Router, edits
 
 def keys(*folders: str, most_nodes: int = 30) -> list[str]:
     """Return the topologies of these folders with at most so many nodes, by name."""
-    root = Path(str(importlib.resources.files(topohub))) / "data"
-    found = []
-    for folder in folders:
-        for path in sorted((root / folder).glob("*.json")):
-            if len(json.loads(path.read_text())["nodes"]) <= most_nodes:
-                found.append(f"{folder}/{path.stem}")
-    return found
+    return [key for folder in folders for key, nodes in _sizes(folder) if nodes <= most_nodes]
+
+
+@cache
+def _sizes(folder: str) -> list[tuple[str, int]]:
+    place = Path(str(importlib.resources.files(topohub))) / "data" / folder
+    return [
+        (f"{folder}/{path.stem}", len(json.loads(path.read_text())["nodes"]))
+        for path in sorted(place.glob("*.json"))
+    ]
 
 
 def topology(key: str) -> dict[str, Any]:

@@ -68,3 +68,20 @@ def rfc2328_area_1() -> Plan:
         "RT3-N8 18, RT4-N8 18, RT3-N9to11H1 29, RT4-N9to11H1 36, RT3-RT5x 14, RT4-RT5x 8",
         "N1 N2 N3 N4 Iab N6 N7 N8 N9to11H1 RT5x",
     )
+
+
+def rfc2328_backbone() -> Plan:
+    """Return the backbone of RFC 2328, Figures 6 and 7: Table 5's routers with the virtual
+    link RT10-RT11 through Area 2; RT7 and RT10 are not adjacent in it (section 3.4)."""
+    return plan_of(
+        "RT3-RT6 8/6, RT4-RT5 8, RT5-RT6 7/6, RT5-RT7 6, RT6-RT10 7/5, RT10-RT11 3/2,"
+        "RT6-Ib 7, RT10-Ia 5",
+        "Ia Ib",
+    )
+
+
+# RFC 8102, Figure 1 and Figure 7: remote alternates that protect against a node.
+RFC8102_FIGURE_1 = "S-E 1, E-D1 1, E-R3 1, R3-D2 1, R3-R2 1, R2-R1 1, R1-N 1, N-S 1"
+RFC8102_FIGURE_7 = (
+    "S-E1 2, N-E2 2, R1-R2 2, S-E2 1, S-N 1, E1-E2 1, E1-D1 1, E1-R3 1, R3-D2 1, R3-R2 1, R1-N 1"
+)

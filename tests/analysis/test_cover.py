@@ -18,7 +18,7 @@ from netsketch.model import Plan, Segment
 from netsketch.routing import AllPairs, NextHop, compile_plan
 from tests import open_data, reference, strategies
 from tests.examples import examples
-from tests.published import plan_of
+from tests.published import RFC8102_FIGURE_1, plan_of
 
 
 class Asked:
@@ -127,7 +127,7 @@ def test_rfc7490_figure_3() -> None:
 
 def test_rfc8102_figure_1_remote_node() -> None:
     """Figure 1 of RFC 8102 (all costs 1): PQ of S-E is {R2} only."""
-    asked = Asked("S-E 1, E-D1 1, E-R3 1, R3-D2 1, R3-R2 1, R2-R1 1, R1-N 1, N-S 1")
+    asked = Asked(RFC8102_FIGURE_1)
     found = remote(asked.pairs, asked.vertex["S"], NextHop("S-E", "E"))
     assert asked.names(found.pq) == {"R2"}
     assert asked.names(found.q) == {"D1", "D2", "R2", "R3"}

@@ -56,12 +56,11 @@ def test_routes_equal_networkx_on_all(key: str, costs: str) -> None:
     check(key, costs)
 
 
-@pytest.mark.parametrize(("key", "diameter"), [("topozoo/Arpanet19706", 4), ("topozoo/Sprint", 4)])
-def test_hop_diameter(key: str, diameter: int) -> None:
-    """topohub's published stats.diameter_hops."""
+@pytest.mark.parametrize("key", open_data.keys("sndlib", "topozoo", most_nodes=60))
+def test_hop_diameter(key: str) -> None:
+    """topohub's published stats.diameter_hops; Sprint and Arpanet19706 have 4."""
     pairs = AllPairs(compile_plan(open_data.plan_of(key)))
-    assert pairs.distances.max() == diameter
-    assert open_data.topology(key)["graph"]["stats"]["diameter_hops"] == diameter
+    assert pairs.distances.max() == open_data.topology(key)["graph"]["stats"]["diameter_hops"]
 
 
 @pytest.mark.parametrize(

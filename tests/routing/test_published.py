@@ -2,12 +2,25 @@
 
 from __future__ import annotations
 
+import json
+from pathlib import Path
+
+import networkx as nx
 import numpy as np
 import pytest
 
+from netsketch.formats import read
 from netsketch.model import Drained, LinkCost, LinkState, NodeState, Plan, Trial, edits
 from netsketch.routing import AllPairs, Network, Routes, Structure, compile_plan
-from tests.published import plan_of, rfc2328_area_1, rfc2328_figure_2
+from tests import reference
+from tests.published import (
+    RFC8102_FIGURE_1,
+    RFC8102_FIGURE_7,
+    plan_of,
+    rfc2328_area_1,
+    rfc2328_backbone,
+    rfc2328_figure_2,
+)
 
 
 class Table:
@@ -86,6 +99,55 @@ def test_rfc2328_section_3_4_load_shares_n8() -> None:
     assert table.links("N8")["RT3", "N8"] == pytest.approx(0.5)
 
 
+def test_rfc2328_table_4() -> None:
+    """RFC 2328, section 3.4, Table 4: what RT3 and RT4 advertise of Area 1."""
+    for router, costs in (("RT3", [4, 4, 1, 2]), ("RT4", [4, 4, 1, 3])):
+        table = Table(rfc2328_area_1(), router)
+        assert [table.cost(network) for network in ("N1", "N2", "N3", "N4")] == costs
+
+
+# RFC 2328, section 3.4, Table 5: backbone distances of RT3 and RT4.
+TABLE_5 = {
+    "RT3": {"RT4": 22, "RT7": 20, "RT10": 15, "RT11": 18, "Ia": 20, "Ib": 15, "RT5": 14},
+    "RT4": {"RT3": 21, "RT7": 14, "RT10": 22, "RT11": 25, "Ia": 27, "Ib": 22, "RT5": 8},
+}
+
+# RFC 2328, Figure 8: what the border routers say of Areas 2 and 3.
+FIGURE_8 = {
+    "N6": {"RT7": 1, "RT10": 1, "RT11": 3},
+    "N7": {"RT7": 5, "RT10": 5, "RT11": 7},
+    "N8": {"RT7": 4, "RT10": 3, "RT11": 2},
+    "N9-N11,H1": {"RT11": 11},
+}
+
+# RFC 2328, section 3.4, Table 6: what RT3 and RT4 then advertise into Area 1. Erratum 2953
+# would make RT4's N8 25; Figure 8 (RT7 14 + 4) and the text on load sharing say 18.
+TABLE_6 = {"N6": (16, 15), "N7": (20, 19), "N8": (18, 18), "N9-N11,H1": (29, 36)}
+
+
+@pytest.mark.parametrize("router", TABLE_5)
+def test_rfc2328_table_5(router: str) -> None:
+    table = Table(rfc2328_backbone(), router)
+    assert {target: table.cost(target) for target in TABLE_5[router]} == TABLE_5[router]
+
+
+@pytest.mark.parametrize("network", TABLE_6)
+def test_rfc2328_table_6(network: str) -> None:
+    for router, printed in zip(("RT3", "RT4"), TABLE_6[network], strict=True):
+        table = Table(rfc2328_backbone(), router)
+        said = FIGURE_8[network].items()
+        assert min(table.cost(border) + cost for border, cost in said) == printed
+
+
+def test_rfc2328_losing_rt6_rt10_parts_the_backbone() -> None:
+    """RFC 2328, section 3.4: it disconnects the backbone; a virtual link RT7-RT10 through
+    Area 2 (cost 1, by N6) would repair it."""
+    plan = rfc2328_backbone()
+    assert Table(plan, "RT6", LinkState("RT6-RT10")).cost("RT11") is None
+    plan.apply(edits.add_link(plan, "RT7", "RT10", 1))
+    assert Table(plan, "RT6", LinkState("RT6-RT10")).cost("RT11") == 12 + 1 + 3
+
+
 # Derived from the input of RFC 2328, Figure 2, not printed there: distances between all
 # routers, row from, column to RT1 … RT12.
 ALL_DISTANCES = """
@@ -127,6 +189,26 @@ REROUTED = {
 def test_rfc2328_figure_2_with_a_link_down(link: str) -> None:
     table = Table(rfc2328_figure_2(), "RT6", LinkState(link))
     for text in REROUTED[link].split(","):
+        target, cost, via = text.split()
+        assert (table.cost(target), table.via(target)) == (int(cost), {via}), target
+
+
+def test_rfc2328_two_way_check(tmp_path: Path) -> None:
+    """RFC 2328, section 16.1 (2) (b): a link is used only if its far end has one back. A
+    directed graph without RT10->RT6 routes as the one without the whole link; derived."""
+    plan = rfc2328_figure_2()
+    graph = nx.MultiDiGraph()
+    for node in plan.nodes:
+        kind = "router" if node.id.startswith("RT") else "segment"
+        graph.add_node(node.id, kind=kind)
+    graph.add_edges_from(reference.graph_of(plan).edges(data=True))
+    graph.remove_edge("RT10", "RT6")
+    path = tmp_path / "fault.json"
+    path.write_text(json.dumps(nx.node_link_data(graph, edges="links")))
+    loaded = read(path)
+    assert any("RT6" in note and "RT10" in note for note in loaded.notes)
+    table = Table(loaded.plan, "RT6")
+    for text in REROUTED["RT6-RT10"].split(","):
         target, cost, via = text.split()
         assert (table.cost(target), table.via(target)) == (int(cost), {via}), target
 
@@ -265,3 +347,93 @@ def test_rfc5286_figure_5_after_the_failure() -> None:
     plan = plan_of("N2-S 1, S-N1 10, N2-D 10, S-E 1, E-D 1, N1-D 10")
     table = Table(plan, "S", LinkState("S-E"))
     assert (table.cost("D"), table.via("D")) == (11, {"N2"})
+
+
+def test_rfc5286_figure_7_two_areas() -> None:
+    """RFC 5286, Appendix A, Figure 7: by Area 1 the ASBR is 35 from A and 20 from B, by
+    Area 2 30 and 25. The figure prints F twice; here the second is F2."""
+    area_1 = "C-F 5, F-X 20, C-A 5, N-A 5, N-S 40, B-S 5, S-E 5, E-X 5, X-ASBR 5"
+    area_2 = "A-F2 1, F2-G 2, G-B 2, B-H 15, H-ASBR 10"
+    costs = [
+        [Table(plan_of(links), router).cost("ASBR") for router in "AB"]
+        for links in (area_1, area_2)
+    ]
+    assert costs == [[35, 20], [30, 25]]
+
+
+def test_rfc6976_figure_1_next_hops_that_cross() -> None:
+    """RFC 6976, Figure 1: shutting X-Y, R still sends to X by Y while Y already sends by
+    R; for Y likewise S by X, X by S."""
+    plan = plan_of("X-Y 1, X-S 1, Y-R 1, S-R 2")
+    down = LinkState("X-Y")
+    assert (Table(plan, "R").via("X"), Table(plan, "Y", down).via("X")) == ({"Y"}, {"R"})
+    assert (Table(plan, "S").via("Y"), Table(plan, "X", down).via("Y")) == ({"X"}, {"S"})
+
+
+def path(links: str, source: str, target: str) -> list[str]:
+    """Return the routers on the one way from ``source`` to ``target``."""
+    shares = Table(plan_of(links), source).routes
+    used = shares.shares(shares.network.structure.vertex_of[target])
+    assert all(share.share == 1.0 for share in used)
+    return [source, *(share.head for share in used)]
+
+
+@pytest.mark.parametrize(
+    ("links", "source", "printed"),
+    [
+        # RFC 8333, Figures 5 and 6: the paths G-D-C-E-F and G-D-C-F-J-K.
+        ("A-B 1, B-E 1, E-C 1, E-F 1, D-C 1, G-D 1, A-D 1", "G", "G D C E F"),
+        ("A-B 1, B-E 15, E-H 1, H-J 1, A-D 1, G-D 1, D-C 1, C-F 1, F-J 1, J-K 1", "G",
+         "G D C F J K"),
+        # RFC 8102, Table 1: the primaries of S.
+        (RFC8102_FIGURE_1, "S", "S E R3"),
+        (RFC8102_FIGURE_1, "S", "S E D1"),
+        (RFC8102_FIGURE_1, "S", "S E R3 D2"),
+        # Peterson and Davie: B and A by C, then on by C-B and B-A.
+        ("D-B 11, D-C 2, C-B 3, C-A 10, B-A 5", "D", "D C B A"),
+    ],
+)  # fmt: skip
+def test_printed_paths(links: str, source: str, printed: str) -> None:
+    routers = printed.split()
+    assert path(links, source, routers[-1]) == routers
+
+
+def test_rfc7490_figure_1_reaches_c_both_ways() -> None:
+    """RFC 7490, Figure 1, a ring of cost 1: only C has equal-cost paths from S, so only C
+    is protectable by a plain alternate."""
+    table = Table(plan_of("S-E 1, E-D 1, D-C 1, C-B 1, B-A 1, A-S 1"), "S")
+    assert table.via("C") == {"E", "A"}
+    assert [table.via(t) for t in "EDAB"] == [{"E"}, {"E"}, {"A"}, {"A"}]
+
+
+# RFC 8102: the distances of Table 3 and Table 5 (Figure 2), Table 7 and Table 9 (Figure 7).
+# Table 5 prints 1 for E to D2 and Table 9 prints 2 for R2 to E2: the figures' costs give 2
+# and 3, and no verdict changes.
+RFC8102_FIGURE_2_DISTANCES = (
+    "N R2 2, N E 1, E R2 2, N R3 2, E R3 1, R2 R3 1, R2 E 2, R2 D1 3, E D1 1, R2 D2 2, E D2 2"
+)
+RFC8102_FIGURE_7_DISTANCES = (
+    "N R2 3, N E1 3, E1 R2 2, N E2 2, E2 R2 3, R2 D1 3, R2 E1 2, E1 D1 1, E2 D1 2, R2 D2 2,"
+    "E1 D2 2, R2 E2 3, E2 D2 3"
+)
+
+
+@pytest.mark.parametrize(
+    ("links", "printed"),
+    [
+        (f"{RFC8102_FIGURE_1}, N-E 1", RFC8102_FIGURE_2_DISTANCES),
+        (RFC8102_FIGURE_7, RFC8102_FIGURE_7_DISTANCES),
+    ],
+)
+def test_rfc8102_distances(links: str, printed: str) -> None:
+    pairs = AllPairs(compile_plan(plan_of(links)))
+    vertex = pairs.network.structure.vertex_of
+    for text in printed.split(","):
+        source, target, distance = text.split()
+        assert pairs.distances[vertex[source], vertex[target]] == int(distance), text
+
+
+def test_rfc8102_figure_7_equal_cost_next_hops() -> None:
+    """RFC 8102, Figure 7: S has the next hops E1 and E2 for D1 and D2."""
+    table = Table(plan_of(RFC8102_FIGURE_7), "S")
+    assert [table.via(target) for target in ("D1", "D2")] == [{"E1", "E2"}] * 2
