@@ -31,6 +31,8 @@ CALLS = {
     "routes": ["--from", "r1"],
     "path": ["--from", "r1", "--to", "r20"],
     "trial": ["--down", "l8"],
+    "load": [],
+    "cover": [],
     "survey": ["--of", "links"],
     "record": ["--down", "l8", "--no-pictures", "-o", "{out}.md"],
     "convert": ["{out}.gml"],

@@ -19,6 +19,8 @@ CALLS: dict[str, Words] = {
     "routes": lambda file, out: ["routes", file, "--from", "a"],
     "path": lambda file, out: ["path", file, "--from", "a", "--to", "b"],
     "trial": lambda file, out: ["trial", file, "--down", "a-b"],
+    "load": lambda file, out: ["load", file],
+    "cover": lambda file, out: ["cover", file],
     "survey": lambda file, out: ["survey", file, "--of", "links"],
     "record": lambda file, out: [
         "record", file, "--down", "a-b", "-o", out.with_suffix(".md"), "--no-pictures",
