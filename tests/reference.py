@@ -93,22 +93,27 @@ def answer(graph: nx.MultiDiGraph, segments: set[str], source: str) -> Answer:
 
 def outcomes(before: Plan, after: Plan) -> dict[tuple[str, str], str]:
     """Return what becomes of each ordered pair of routers that changes."""
-    old, new = answers(before), answers(after)
+    failed = {node.id for node in before.nodes if node.up and not after.nodes[node.id].up}
+    return outcomes_of(answers(before), answers(after), failed)
+
+
+def outcomes_of(
+    old: dict[str, Answer], new: dict[str, Answer], failed: set[str]
+) -> dict[tuple[str, str], str]:
+    """Return the same from the answers before and after, and what failed in between."""
     found = {}
-    for source in old:
-        for target in old:
-            ends = source, target
-            if source == target or any(
-                before.nodes[end].up and not after.nodes[end].up for end in ends
-            ):
+    routers = [router for router in old if router not in failed]
+    for source in routers:
+        for target in routers:
+            if source == target:
                 continue
             was, now = old[source].distance.get(target), new[source].distance.get(target)
             if was is None and now is not None:
-                found[ends] = "restored"
+                found[source, target] = "restored"
             elif was is not None and now is None:
-                found[ends] = "cut off"
+                found[source, target] = "cut off"
             elif was is not None and (
                 was != now or old[source].next_hops[target] != new[source].next_hops[target]
             ):
-                found[ends] = "moved"
+                found[source, target] = "moved"
     return found

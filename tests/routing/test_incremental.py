@@ -15,7 +15,7 @@ from scipy.sparse.csgraph import dijkstra
 
 from netsketch.formats import native
 from netsketch.model import Edit, LinkState, Plan, Router, Trial, edits
-from netsketch.routing import BLOCKED, AllPairs, Network, Routes, compile_plan
+from netsketch.routing import BLOCKED, AllPairs, Network, Routes, Structure, compile_plan
 from tests import reference, strategies
 from tests.examples import examples
 from tests.published import plan_of
@@ -72,23 +72,27 @@ class RandomChanges(RuleBasedStateMachine):
         self.tried = self.pairs.copy()
         self.tried.move_to(self.network.laid_over(plan.trial))
 
-    def follow(self, edit: Edit) -> Edit:
+    def apply(self, edit: Edit) -> Edit:
         inverse = self.plan.apply(edit)
         self.network = self.network.after(self.plan, edit.steps)
+        return inverse
+
+    def catch_up(self) -> None:
         self.pairs.move_to(self.network)
         self.tried.move_to(self.network.laid_over(self.plan.trial))
-        return inverse
 
     @rule(data=st.data(), count=st.integers(1, 4))
     def change(self, data: st.DataObject, count: int) -> None:
-        """A batch: several edits before the answers are looked at."""
+        """A batch: several edits before the distances follow, all at once."""
         for _ in range(count):
-            self.undo.append(self.follow(data.draw(strategies.edits_on(self.plan))))
+            self.undo.append(self.apply(data.draw(strategies.edits_on(self.plan))))
+        self.catch_up()
 
     @rule()
     def take_back(self) -> None:
         if self.undo:
-            self.follow(self.undo.pop())
+            self.apply(self.undo.pop())
+            self.catch_up()
 
     @invariant()
     def answers_are_those_from_scratch(self) -> None:
@@ -120,7 +124,7 @@ class RandomChanges(RuleBasedStateMachine):
 
     def teardown(self) -> None:
         while self.undo:
-            self.follow(self.undo.pop())
+            self.apply(self.undo.pop())
         if hasattr(self, "start_bytes"):
             assert native.dumps(self.plan) == self.start_bytes
 
@@ -129,6 +133,57 @@ TestRandomChanges = RandomChanges.TestCase
 TestRandomChanges.settings = settings(
     examples(40), stateful_step_count=32, suppress_health_check=list(HealthCheck)
 )
+
+
+def random_network(rng: np.random.Generator, structure: Structure, like: Network | None) -> Network:
+    """Return a network in few costs with many ties; about half is as ``like``."""
+    s = structure
+    cost = np.where(s.tail < s.routers, rng.integers(1, 4, len(s.tail)), 0).astype(np.int32)
+    link_up = rng.random(len(s.link_ids)) < 0.8
+    vertex_up, drained = rng.random(s.vertices) < 0.95, rng.random(s.vertices) < 0.1
+    drained[s.routers :] = False
+    if like is not None:
+        part = rng.random()
+        cost = np.where(rng.random(len(cost)) < part, like.cost, cost)
+        link_up = np.where(rng.random(len(link_up)) < part, like.link_up, link_up)
+        vertex_up = np.where(rng.random(s.vertices) < part, like.vertex_up, vertex_up)
+        drained = np.where(rng.random(s.vertices) < part, like.drained, drained)
+    unknown = np.full(len(link_up), np.nan)
+    return Network(s, cost, link_up, vertex_up, drained, unknown, unknown, 65535)
+
+
+def random_structure(rng: np.random.Generator) -> Structure:
+    """Return up to 7 routers and 2 segments with parallel links."""
+    routers, segments = int(rng.integers(3, 8)), int(rng.integers(0, 3))
+    ends = rng.integers(0, routers + segments, (int(rng.integers(4, 20)), 2))
+    ends = ends[(ends[:, 0] != ends[:, 1]) & (ends < routers).any(axis=1)]
+    names = [f"v{i}" for i in range(routers + segments)]
+    links = [f"l{i}" for i in range(len(ends))]
+    return Structure.build(names[:routers], names[routers:], links, ends)
+
+
+def test_from_any_network_to_any_other() -> None:
+    """Whole batches at once: any number of arcs dearer, cheaper, gone and new together."""
+    rng = np.random.default_rng(7)
+    for _ in range(600):
+        structure = random_structure(rng)
+        pairs = AllPairs(random_network(rng, structure, None))
+        for _ in range(5):
+            before = pairs.distances.copy()
+            update = pairs.move_to(random_network(rng, structure, pairs.network))
+            assert (pairs.distances == AllPairs(pairs.network).distances).all()
+            assert update.changed_pairs == int((pairs.distances != before).sum())
+
+
+def test_a_parallel_link_goes_with_the_way_to_its_tail() -> None:
+    """One of two parallel links and the best way to their tail go down at once: the other
+    one does not keep the head where it was."""
+    plan = plan_of("s-u 1, s-x 5, x-u 5, u-v 1")
+    plan.apply(edits.add_link(plan, "u", "v", 1))
+    pairs = AllPairs(compile_plan(plan))
+    pairs.move_to(pairs.network.laid_over(Trial((LinkState("s-u"), LinkState("u-v")))))
+    vertex = pairs.network.structure.vertex_of
+    assert [pairs.distances[vertex["s"], vertex[t]] for t in "uxv"] == [10, 5, 11]
 
 
 def test_long_costs_need_64_bits() -> None:
