@@ -48,19 +48,27 @@ class Files(QObject):
             if path is not None:
                 self._read(path)
 
-    def open_path(self, path: Path | None) -> None:
-        """Open a file that was already chosen (recent, demo, command line); ``None`` asks."""
-        if path is None:
-            self.open()
-        elif self.may_leave():
+    def open_path(self, path: Path) -> None:
+        """Open a file that was already chosen (recent, command line)."""
+        if self.may_leave():
             self._read(path)
 
-    def _read(self, path: Path) -> None:
+    def open_demo(self, path: Path) -> None:
+        """Open a copy of a demo network: saving asks where to; the demo stays as it is."""
+        if self.may_leave():
+            self._read(path, _copy_of)
+
+    def begin_with(self, demo: Path | None) -> None:
+        """Open a copy of a demo network; ``None`` asks for a file."""
+        if demo is None:
+            self.open()
+        else:
+            self.open_demo(demo)
+
+    def _read(self, path: Path, read: Callable[[Path], Document] = Document.open) -> None:
         left = self._as_it_is()
         self.state_changed.emit(f"Opening {path.name}")
-        self._relay.submit(
-            "open", lambda cancelled: Document.open(path), partial(self._opened, path, left)
-        )
+        self._relay.submit("open", lambda cancelled: read(path), partial(self._opened, path, left))
 
     def _as_it_is(self) -> tuple[Document, int]:
         return self._desk.document, self._desk.document.plan.revision
@@ -76,8 +84,9 @@ class Files(QObject):
             raise result
         elif left == self._as_it_is() or self.may_leave():  # edits can be made while it is read
             self._desk.set_document(result)
-            self._settings.add_recent(path)
-            self.recent_changed.emit()
+            if not _is_copy_of(path, result):
+                self._settings.add_recent(path)
+                self.recent_changed.emit()
             if result.notes:
                 self.noted.emit("\n".join(result.notes))
 
@@ -160,3 +169,17 @@ class Files(QObject):
         if answer == questions.SAVE:
             return self.save()
         return answer == questions.THROW_AWAY
+
+
+def _copy_of(path: Path) -> Document:
+    document = Document.open(path)
+    document.path, document.suggested = None, _copy_name(path)
+    return document
+
+
+def _copy_name(path: Path) -> Path:
+    return Path(path.name.split(".")[0])
+
+
+def _is_copy_of(path: Path, document: Document) -> bool:
+    return document.path is None and document.suggested == _copy_name(path)

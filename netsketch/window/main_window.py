@@ -105,7 +105,7 @@ class MainWindow(QMainWindow):
             self.statusBar().addPermanentWidget(state)
         self._demos = QMenu("Open a demo network", self)
         for name, path in demo_files():
-            self._demos.addAction(name, partial(self.files.open_path, path))
+            self._demos.addAction(name, partial(self.files.open_demo, path))
         self._demos.setEnabled(not self._demos.isEmpty())
         self._recent = QMenu("Open recent", self)
         self._recent.setToolTipsVisible(True)
@@ -147,7 +147,7 @@ class MainWindow(QMainWindow):
         sheet.selection_changed.connect(self._show_selection)
         sheet.menu_asked.connect(self._show_menu)
         sheet.tool_changed.connect(self._show_tool)
-        self.inspector.opened.connect(self.files.open_path)
+        self.inspector.opened.connect(self.files.begin_with)
         self.inspector.focus_asked.connect(self.go_to)
         self.inspector.path_lit.connect(sheet.light_path)
         self.inspector.path_asked.connect(desk.set_pair)

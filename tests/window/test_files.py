@@ -15,6 +15,7 @@ from netsketch.model import Link, Plan, Router, edits
 from netsketch.window import questions
 from netsketch.window.literal import as_tip, on_button
 from netsketch.window.questions import Questions
+from netsketch.window.settings import Settings
 from tests.demos import demo_path
 from tests.window.conftest import Person
 
@@ -118,3 +119,19 @@ def test_a_refusal_is_shown_as_it_is_written(person: Person, qtbot: QtBot) -> No
     timer.stop()
     assert shown[0].text() == "<b>plan</b>.gml: line 3"
     assert shown[0].textFormat() == Qt.TextFormat.PlainText
+
+
+def test_a_demo_is_opened_as_a_copy(person: Person, tmp_path: Path) -> None:
+    before = demo_path("harbour-campus").read_bytes()
+    demo = next(a for a in person.window._demos.actions() if a.text() == "Harbour campus")
+    demo.trigger()
+    person.settle()
+    assert len(person.plan.nodes) > 20
+    assert Settings().recent == []
+    person.do("select_all")
+    person.key(Qt.Key.Key_Delete)
+    person.ask.path = tmp_path / "mine.netsketch.json"
+    person.do("save")
+    assert person.ask.path.exists()
+    assert person.window.windowTitle().startswith("mine.netsketch.json")
+    assert demo_path("harbour-campus").read_bytes() == before

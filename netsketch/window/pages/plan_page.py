@@ -25,7 +25,7 @@ class PlanPage(Page):
     """Counts and settings of the plan; where it is empty, ways to begin."""
 
     opened = Signal(object)
-    """A file to open; ``None`` asks for one."""
+    """A demo network to open; ``None`` asks for a file."""
 
     def __init__(self) -> None:
         super().__init__()
