@@ -16,11 +16,14 @@ QT_LIBRARIES: Final = {
     "libEGL.so.1": "libegl1",
     "libGL.so.1": "libgl1",
     "libX11.so.6": "libx11-6",
+    "libdbus-1.so.3": "libdbus-1-3",
     "libfontconfig.so.1": "libfontconfig1",
     "libfreetype.so.6": "libfreetype6",
     "libglib-2.0.so.0": "libglib2.0-0",
     "libgthread-2.0.so.0": "libglib2.0-0",
     "libxkbcommon.so.0": "libxkbcommon0",
+    "libz.so.1": "zlib1g",
+    "libzstd.so.1": "libzstd1",
 }
 """What Qt needs wherever it draws, with the package that brings each."""
 
@@ -80,7 +83,8 @@ def missing_library(needed: Mapping[str, str] = QT_LIBRARIES) -> str | None:
         except OSError:
             return (
                 f"the system library {library} is missing; Debian and Ubuntu have it in the "
-                f"package {package} (apt-get install {package})"
+                f"package {package} (apt-get install {package}), other systems in one of a "
+                "similar name"
             )
     return None
 

@@ -1,4 +1,7 @@
-"""Where the program starts: a command goes to the commands, everything else to the window."""
+"""Where the program starts: a command goes to the commands, everything else to the window.
+
+What it starts is loaded inside its functions, so that Ctrl-C meanwhile ends in words too.
+"""
 
 from __future__ import annotations
 
@@ -7,15 +10,30 @@ import os
 import sys
 from collections.abc import Sequence
 from pathlib import Path
+from typing import Final
 
-from netsketch import compiled, screen
-from netsketch.cli.main import COMMANDS, refused, window_options
-from netsketch.cli.main import main as run_command
+INTERRUPTED: Final = 130  # 128 and the number of SIGINT, as shells count
 
 
 def main(argv: Sequence[str]) -> int:
     """Run ``netsketch`` with these words (without the program's name); return the exit
-    code: 0 done, 1 refused (one line on standard error), 2 bad usage."""
+    code: 0 done, 1 refused (one line on standard error), 2 bad usage, 130 stopped by Ctrl-C."""
+    try:
+        return _begin(argv)
+    except KeyboardInterrupt:
+        print("netsketch: stopped", file=sys.stderr)
+        return INTERRUPTED
+
+
+def _begin(argv: Sequence[str]) -> int:
+    from netsketch import compiled
+    from netsketch.cli.main import COMMANDS, refused, window_options
+    from netsketch.cli.main import main as run_command
+
+    try:
+        compiled.choose_folder(os.environ)
+    except OSError as error:
+        return refused(f"there is no folder for temporary files: {error}")
     if argv and argv[0] in COMMANDS:
         return run_command(argv)
     try:
@@ -26,6 +44,9 @@ def main(argv: Sequence[str]) -> int:
 
 
 def _open_window(file: Path | None) -> int:
+    from netsketch import screen
+    from netsketch.cli.main import COMMANDS, refused
+
     reason = screen.refusal(os.environ)
     if reason is not None:
         *most, last = COMMANDS
@@ -43,8 +64,4 @@ def run() -> None:
     """Run the program with the words it was called with, and leave with its exit code."""
     if isinstance(sys.stdout, io.TextIOWrapper):  # a name the terminal cannot show is no failure
         sys.stdout.reconfigure(errors="backslashreplace")
-    try:
-        compiled.choose_folder(os.environ)
-    except OSError as error:
-        sys.exit(refused(f"there is no folder for temporary files: {error}"))
     sys.exit(main(sys.argv[1:]))

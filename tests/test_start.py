@@ -66,7 +66,9 @@ def test_an_internal_error_is_one_line(
     monkeypatch.setattr("netsketch.cli.convert.run", broken)
     monkeypatch.delenv("NETSKETCH_DEBUG", raising=False)
     assert start.main(["convert", "a", "b"]) == 1
-    assert capsys.readouterr().err == "netsketch: internal error: RuntimeError: two lines\n"
+    assert capsys.readouterr().err == (
+        "netsketch: internal error: RuntimeError: two lines (NETSKETCH_DEBUG=1 shows where)\n"
+    )
     monkeypatch.setenv("NETSKETCH_DEBUG", "1")
     with pytest.raises(RuntimeError):
         start.main(["convert", "a", "b"])

@@ -27,8 +27,6 @@ COMMANDS: Final = {
 }
 """Command -> what it answers. Each is a module of this package."""
 
-INTERRUPTED: Final = 130  # 128 and the number of SIGINT, as shells count
-
 
 class Command(Protocol):
     """What the module of a command holds."""
@@ -42,7 +40,9 @@ class Command(Protocol):
 
 def main(argv: Sequence[str]) -> int:
     """Run the command in ``argv`` (without the program's name) and return its exit code:
-    0 done, 1 the input was refused (one line on standard error), 2 bad usage."""
+    0 done, 1 the input was refused (one line on standard error), 2 bad usage.
+
+    Ctrl-C goes through as ``KeyboardInterrupt``."""
     try:
         _run(argv)
         sys.stdout.flush()
@@ -56,13 +56,11 @@ def main(argv: Sequence[str]) -> int:
     except OSError as error:
         _give_output_up()
         return refused(f"{error.filename or 'standard output'}: {error.strerror or error}")
-    except KeyboardInterrupt:
-        refused("stopped")
-        return INTERRUPTED
     except Exception as error:
         if os.environ.get("NETSKETCH_DEBUG"):
             raise
-        return refused(f"internal error: {type(error).__name__}: {error}")
+        what = f"{type(error).__name__}: {error}"
+        return refused(f"internal error: {what} (NETSKETCH_DEBUG=1 shows where)")
     return 0
 
 

@@ -60,7 +60,8 @@ def add_trial(parser: ArgumentParser, *, stored: bool = True) -> None:
         action="append",
         default=[],
         type=cost_option,
-        help="give a link another cost; LINK=OUT/BACK for one each way",
+        help="give a link another cost, from both of its ends (leaving a segment stays 0); "
+        "LINK=OUT/BACK gives the cost from the link's first end and the cost of the way back",
     )
     if stored:
         group.add_argument(

@@ -11,7 +11,7 @@ from pathlib import Path
 
 import pytest
 
-from netsketch.cli.main import main
+from netsketch.start import main
 from tests.demos import demo_path
 
 PROGRAM = [sys.executable, "-m", "netsketch"]
@@ -59,6 +59,28 @@ def test_ctrl_c_is_one_line(
     monkeypatch.setattr(sys, "stdout", Interrupted())
     assert main(["trial", str(demo_path("harbour-campus")), "--down", "g1"]) == 130
     assert capsys.readouterr().err == "netsketch: stopped\n"
+
+
+STOPPED_WHILE_LOADING = """
+import signal, sys
+from netsketch.start import run
+
+class Stop:
+    def find_spec(self, name, path=None, target=None):
+        if name == "netsketch.cli.main":
+            signal.raise_signal(signal.SIGINT)
+
+sys.meta_path.insert(0, Stop())
+run()
+"""
+
+
+def test_ctrl_c_while_the_program_loads_is_one_line() -> None:
+    ended = subprocess.run(
+        [sys.executable, "-c", STOPPED_WHILE_LOADING],
+        cwd=ROOT, text=True, check=False, timeout=120, capture_output=True,
+    )  # fmt: skip
+    assert (ended.returncode, ended.stdout, ended.stderr) == (130, "", "netsketch: stopped\n")
 
 
 def test_names_that_the_terminal_cannot_show() -> None:
