@@ -5,15 +5,23 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 from functools import lru_cache
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
-import numpy.typing as npt
-from PySide6.QtCore import QAbstractTableModel, QModelIndex, QObject, QPersistentModelIndex, Qt
+from PySide6.QtCore import (
+    QAbstractTableModel,
+    QModelIndex,
+    QObject,
+    QPersistentModelIndex,
+    Qt,
+    Signal,
+)
 
 from netsketch.model import Plan
 from netsketch.reports.words import next_hops_text, outcome_text
+from netsketch.window.ledger_choice import Choice, Rows
 from netsketch.window.literal import as_tip
 
 if TYPE_CHECKING:
@@ -34,6 +42,9 @@ TIPS = (
     "In the plan",
     "In the trial",
 )
+AT_ONCE = 50_000
+"""Rows that are sorted and filtered in the blink of an eye."""
+
 OUTCOMES = ("moved", "cut off", "restored")
 _NUMBERS = (3, 4, 5, 6)
 _SORTABLE = range(7)
@@ -48,18 +59,21 @@ Index = QModelIndex | QPersistentModelIndex
 
 
 class LedgerModel(QAbstractTableModel):
-    """Rows of a ledger, chosen and ordered by index arrays."""
+    """Rows of a ledger, chosen and ordered by an index array.
+
+    Up to :data:`AT_ONCE` rows are chosen at once; for more, ``work_asked`` hands out the
+    work, whose result comes back by :meth:`take`.
+    """
+
+    work_asked = Signal(object)
 
     def __init__(self, parent: QObject | None = None) -> None:
         super().__init__(parent)
         self.ledger: Ledger | None = None
+        self._plan = Plan()
         self._labels: list[str] = []
-        self._alphabet = np.empty(0, np.int64)
+        self._choice = Choice()
         self._chosen = np.empty(0, np.int64)
-        self._order: tuple[int, bool] = (0, False)
-        self._text, self._outcome = "", -1
-        self._least_cost: int | None = None
-        self._least_delay: float | None = None
         self._texts = lru_cache(maxsize=2048)(self._texts_of)
 
     def show(self, ledger: Ledger | None, plan: Plan) -> None:
@@ -69,12 +83,10 @@ class LedgerModel(QAbstractTableModel):
         self._plan = plan.snapshot()  # the rows stay readable when the plan moves on
         ids = [] if ledger is None else ledger.routers
         self._labels = [plan.nodes[key].label if key in plan.nodes else key for key in ids]
-        self._alphabet = np.argsort(
-            np.argsort(np.array([label.casefold() for label in self._labels], object))
-        )
+        self._chosen = np.arange(0 if ledger is None else len(ledger))
         self._texts.cache_clear()
-        self._choose()
         self.endResetModel()
+        self._choose()
 
     def set_filter(
         self,
@@ -85,56 +97,34 @@ class LedgerModel(QAbstractTableModel):
     ) -> None:
         """Show only pairs with ``text`` in the name or id of either router, with this
         outcome code (-1: any), and with at least so much extra cost and extra delay."""
-        self._text, self._outcome = text.strip().casefold(), outcome
-        self._least_cost, self._least_delay = least_cost, least_delay
-        self.beginResetModel()
+        wanted = text.strip().casefold()
+        self._choice = replace(
+            self._choice, text=wanted, outcome=outcome, least_cost=least_cost,
+            least_delay=least_delay,
+        )  # fmt: skip
         self._choose()
-        self.endResetModel()
 
     def sort(self, column: int, order: Qt.SortOrder = Qt.SortOrder.AscendingOrder) -> None:
         if column in _SORTABLE:
-            self._order = column, order == Qt.SortOrder.DescendingOrder
-            self.beginResetModel()
+            backwards = order == Qt.SortOrder.DescendingOrder
+            self._choice = replace(self._choice, column=column, backwards=backwards)
             self._choose()
-            self.endResetModel()
 
     def _choose(self) -> None:
-        ledger = self.ledger
+        ledger, labels, choice = self.ledger, self._labels, self._choice
         if ledger is None:
-            self._chosen = np.empty(0, np.int64)
             return
-        keep = np.ones(len(ledger), np.bool_)
-        if self._text:
-            named = np.array(
-                [
-                    self._text in label.casefold() or self._text in key.casefold()
-                    for label, key in zip(self._labels, ledger.routers, strict=True)
-                ]
-            )
-            keep &= named[ledger.sources] | named[ledger.targets]
-        if self._outcome >= 0:
-            keep &= ledger.outcomes == self._outcome
-        if self._least_cost is not None:
-            both = (ledger.before >= 0) & (ledger.after >= 0)
-            keep &= both & (ledger.after - ledger.before >= self._least_cost)
-        if self._least_delay is not None:
-            keep &= ledger.delay_after - ledger.delay_before >= self._least_delay
-        chosen = np.flatnonzero(keep)
-        column, backwards = self._order
-        key = self._key(ledger, column)[chosen]
-        self._chosen = chosen[np.argsort(-key if backwards else key, kind="stable")]
+        if len(ledger) <= AT_ONCE:
+            self.take((ledger, choice.rows(ledger, labels)))
+        else:
+            self.work_asked.emit(lambda cancelled: (ledger, choice.rows(ledger, labels)))
 
-    def _key(self, ledger: Ledger, column: int) -> npt.NDArray[Any]:
-        keys: tuple[npt.NDArray[Any], ...] = (
-            self._alphabet[ledger.sources] * len(self._labels) + self._alphabet[ledger.targets],
-            self._alphabet[ledger.targets] * len(self._labels) + self._alphabet[ledger.sources],
-            ledger.outcomes.astype(np.int64),
-            ledger.before,
-            ledger.after,
-            ledger.after - ledger.before,
-            ledger.delay_after - ledger.delay_before,
-        )
-        return keys[column]
+    def take(self, result: tuple[Ledger, Rows]) -> None:
+        """Show the rows that were chosen, unless of another ledger by now."""
+        if result[0] is self.ledger:
+            self.beginResetModel()
+            self._chosen = result[1]
+            self.endResetModel()
 
     def pair(self, index: int) -> tuple[str, str]:
         """Return the routers of a shown row."""

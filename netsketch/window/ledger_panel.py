@@ -6,7 +6,7 @@ import math
 import time
 from collections.abc import Sequence
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QTimer, Signal
 from PySide6.QtGui import QGuiApplication
@@ -25,8 +25,10 @@ from PySide6.QtWidgets import (
 
 from netsketch.model import Plan
 from netsketch.reports.tables import csv_text
+from netsketch.session.jobs import Task
 from netsketch.window.ledger_model import HEADERS, OUTCOMES, LedgerModel
 from netsketch.window.questions import Questions
+from netsketch.window.relay import Relay
 
 if TYPE_CHECKING:
     from netsketch.analysis.ledger import Ledger
@@ -44,9 +46,9 @@ class LedgerPanel(QWidget):
     baseline_asked = Signal(str)
     """The kept trial to compare with; "" is the plan."""
 
-    def __init__(self, ask: Questions, parent: QWidget | None = None) -> None:
+    def __init__(self, ask: Questions, relay: Relay, parent: QWidget | None = None) -> None:
         super().__init__(parent)
-        self._ask = ask
+        self._ask, self._relay = ask, relay
         self._title = "ledger"
         self.model = LedgerModel(self)
         self.totals = QLabel()
@@ -76,6 +78,8 @@ class LedgerPanel(QWidget):
         self.copy.clicked.connect(self._copy)
         self.export.clicked.connect(self._export)
         self.table.selectionModel().currentRowChanged.connect(self._ask_pair)
+        self.model.work_asked.connect(self._choose_behind)
+        self.model.modelReset.connect(self._show_totals)
         self._writer = _CsvWriter(self)
         self.set_ledger(None, Plan())
 
@@ -103,7 +107,15 @@ class LedgerPanel(QWidget):
         self._writer.stop()
         self._title = plan.settings.name or "ledger"
         self.model.show(ledger, plan)
-        self._show_totals()
+
+    def _choose_behind(self, task: Task) -> None:
+        self.totals.setText("sorting…")
+        self._relay.submit("ledger rows", task, self._chosen)
+
+    def _chosen(self, result: Any) -> None:
+        if isinstance(result, Exception):
+            raise result
+        self.model.take(result)
 
     def show_kept(self, names: Sequence[str], chosen: str) -> None:
         """Offer the plan and kept trials to compare with."""
@@ -143,7 +155,6 @@ class LedgerPanel(QWidget):
             None if cost is None else math.ceil(cost),
             delay,
         )
-        self._show_totals()
 
     def _ask_pair(self) -> None:
         row = self.table.currentIndex().row()

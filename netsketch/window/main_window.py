@@ -58,7 +58,7 @@ class MainWindow(QMainWindow):
         self.files = Files(self.desk, self.relay, self.settings, self.ask, self)
         self.sheet = Sheet()
         self.inspector = Inspector()
-        self.ledger = LedgerPanel(self.ask)
+        self.ledger = LedgerPanel(self.ask, self.relay)
         self.surveys = Surveys(self.desk, self)
         self.survey = SurveyPanel(self.surveys, self.ask)
         self.strip = TrialStrip()
