@@ -10,7 +10,7 @@ from dataclasses import dataclass
 
 import networkx as nx
 
-from netsketch.model import ChangeTrial, Edit, Plan, Trial, edits
+from netsketch.model import ChangeTrial, Edit, Plan, Segment, Trial, edits
 
 Hops = set[tuple[str, str | None]]
 
@@ -34,7 +34,8 @@ def with_trial(plan: Plan, trial: Trial) -> Plan:
 def graph_of(plan: Plan) -> nx.MultiDiGraph:
     """Return an arc for each direction of each link that carries traffic."""
     graph = nx.MultiDiGraph()
-    graph.add_nodes_from(node.id for node in plan.nodes)
+    for node in plan.nodes:
+        graph.add_node(node.id, segment=isinstance(node, Segment))
     for link in plan.links:
         if link.up and all(plan.nodes[end].up for end in link.ends):
             graph.add_edge(link.source, link.target, key=link.id, cost=link.cost)
@@ -54,12 +55,18 @@ def answers(plan: Plan) -> dict[str, Answer]:
 
 
 def _seen_from(graph: nx.MultiDiGraph, drained: set[str], source: str) -> nx.MultiDiGraph:
-    """Return the graph without the arcs out of drained routers other than ``source``."""
+    """Return the graph without the arcs out of drained routers other than ``source``, but
+    for those to segments that no other router is on."""
     if not drained - {source}:
         return graph
     seen = graph.copy()
     for router in drained - {source}:
-        seen.remove_edges_from(list(seen.out_edges(router, keys=True)))
+        own = {
+            v for v, segment in graph.nodes(data="segment") if segment and set(graph[v]) == {router}
+        }
+        seen.remove_edges_from(
+            [edge for edge in seen.out_edges(router, keys=True) if edge[1] not in own]
+        )
     return seen
 
 

@@ -118,7 +118,9 @@ class Fabric:
         if self._last_resort[neighbour.link]:
             return np.zeros(vertices, np.bool_)
         if self.network.drained[neighbour.vertex]:
-            return np.asarray(np.arange(vertices) == neighbour.vertex)
+            own = self.network.only_router == neighbour.vertex
+            own[neighbour.vertex] = True
+            return np.asarray(own)
         return np.ones(vertices, np.bool_)
 
     def conditions(

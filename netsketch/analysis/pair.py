@@ -110,11 +110,11 @@ def other_way(routes: Routes, target: int) -> OtherWay | None:
     with the source, and the segment crossed to the router, taken out.
     """
     network, source = routes.network, routes.source
-    primary = set(routes.next_hops(target))
+    primary, closed = set(routes.next_hops(target)), network.closed_towards(target)
     best: tuple[int, list[NextHop]] | None = None
     ahead: dict[tuple[int, int], int | None] = {}
     for hop, cost, head, across in _first_hops(network, source, target):
-        if hop in primary or (network.drained[head] and head != target):
+        if hop in primary or (closed[head] and head != target):
             continue
         if (head, across) not in ahead:
             up = network.vertex_up.copy()

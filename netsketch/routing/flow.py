@@ -21,10 +21,10 @@ Floats = npt.NDArray[np.float64]
 def distances_to(network: Network, target: int) -> Distances:
     """Return the distance from every vertex (V,) to vertex ``target``: Dijkstra's
     algorithm against the arcs. A drained router is at its own distance, but nobody else
-    is through it."""
+    is through it, unless to a segment that is its alone."""
     s = network.structure
     weight = network.weight[s.in_arc]
-    transit = np.where(network.drained[s.head[s.in_arc]], BLOCKED, weight)
+    transit = np.where(network.closed_towards(target)[s.head[s.in_arc]], BLOCKED, weight)
     row = np.empty(s.vertices, network.distance_type)
     kernels.source_row(
         s.in_ptr, s.tail[s.in_arc], weight, transit, unreached(row.dtype.type), target, row,
@@ -38,7 +38,7 @@ def sink_arcs(
     indptr: Array,
     head: Array,
     weight: Array,
-    drained: Array,
+    closed: Array,
     target: int,
     row: Array,
     unreached: int,
@@ -63,7 +63,7 @@ def sink_arcs(
         for a in range(indptr[u], indptr[u + 1]):
             v = head[a]
             w = weight[a]
-            if w == BLOCKED or row[v] == unreached or (drained[v] and v != target):
+            if w == BLOCKED or row[v] == unreached or (closed[v] and v != target):
                 continue
             if d == w + np.int64(row[v]):
                 arcs[found] = a
@@ -165,8 +165,8 @@ class Sink:
         self.ptr = np.empty(s.vertices + 1, np.int32)
         arcs, order = np.empty(len(s.head), np.int32), np.empty(s.vertices, np.int32)
         reached = sink_arcs(
-            s.indptr, s.head, network.weight, network.drained, target, self.row, self.unreached,
-            self.ptr, arcs, order,
+            s.indptr, s.head, network.weight, network.closed_towards(target), target, self.row,
+            self.unreached, self.ptr, arcs, order,
         )  # fmt: skip
         self.arcs, self.order = arcs[: self.ptr[-1]], order[:reached]
 

@@ -1,8 +1,9 @@
 """The compiled loops: one source at a time over CSR arrays.
 
 Every kernel takes two weight arrays: ``weight`` for arcs that leave the source itself and
-``transit`` for all others, in which arcs out of a drained router are BLOCKED; so a drained
-router is reached and reaches, but nobody passes through it.
+``transit`` for all others, in which arcs out of a drained router are BLOCKED but for those
+to a segment that is its alone; so a drained router is reached and reaches, but nobody
+passes through it to another router.
 
 A heap entry is ``distance << VERTEX_BITS | vertex`` in one int64, which orders by distance
 and needs no second array. Distances stay below 2**42.

@@ -162,15 +162,37 @@ class Network:
 
     def __post_init__(self) -> None:
         """Derive ``weight`` (:data:`BLOCKED` unless the link and both its ends are up) and
-        ``transit`` (also blocked where the tail is drained: for every source but it)."""
+        ``transit`` (also blocked where the tail is drained: for every source but it). What
+        is attached to a drained router alone stays reachable through it (RFC 3277)."""
         s = self.structure
         usable = self.link_up[s.link] & self.vertex_up[s.tail] & self.vertex_up[s.head]
         weight = np.where(usable, self.cost, BLOCKED)
+        object.__setattr__(self, "weight", weight)
         transit = weight
         if self.drained.any():
-            transit = np.where(self.drained[s.tail], BLOCKED, weight)
-        object.__setattr__(self, "weight", weight)
+            closed = self.drained[s.tail] & (self.only_router[s.head] != s.tail)
+            transit = np.where(closed, BLOCKED, weight)
         object.__setattr__(self, "transit", transit)
+
+    @cached_property
+    def only_router(self) -> Ints:
+        """For each vertex (V,): of a segment on which just one router is left, a stub
+        network, that router; of everything else -1."""
+        s = self.structure
+        first, last = np.full(s.vertices, s.vertices, np.int32), np.full(s.vertices, -1, np.int32)
+        inside = (s.tail >= s.routers) & (self.weight != BLOCKED)
+        np.minimum.at(first, s.tail[inside], s.head[inside])
+        np.maximum.at(last, s.tail[inside], s.head[inside])
+        return np.where(first == last, first, -1)
+
+    def closed_towards(self, target: int) -> Bools:
+        """Return which vertices (V,) nobody else's traffic to ``target`` passes: drained
+        routers, but for the one that ``target`` is attached to alone."""
+        if not self.drained.any() or self.only_router[target] < 0:
+            return self.drained
+        closed = self.drained.copy()
+        closed[self.only_router[target]] = False
+        return closed
 
     @cached_property
     def fingerprint(self) -> str:

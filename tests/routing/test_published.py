@@ -261,6 +261,19 @@ def test_rfc3277_overloaded_router_is_reached_but_never_transit() -> None:
     assert Table(plan, "B", Drained("B")).cost("E") == 20, "a drained router sends its own"
 
 
+def test_rfc3277_networks_of_an_overloaded_router_stay_reachable() -> None:
+    """RFC 3277: an overloaded router's own prefixes are still reached through it. RFC 2328,
+    Figure 2, with RT12 or RT10 drained, seen from RT6; derived."""
+    table = Table(rfc2328_figure_2(), "RT6", Drained("RT12"))
+    assert [table.cost(t) for t in ("RT12", "N9", "N10", "H1")] == [11, 11, 13, 21]
+    assert table.links("H1")["RT12", "H1"] == 1.0
+    table = Table(rfc2328_figure_2(), "RT6", Drained("RT10"))
+    assert [table.cost(t) for t in ("RT10", "Ia", "N6", "RT11")] == [7, 12, 13, None]
+    # With RT11 gone N8 is RT10's alone.
+    table = Table(rfc2328_figure_2(), "RT6", Drained("RT10"), NodeState("RT11"))
+    assert table.cost("N8") == 10
+
+
 def directed(arcs: str) -> tuple[Network, dict[str, int]]:
     """Return a network of one-way arcs "s->t 10": the other direction never carries."""
     parts = [text.split() for text in arcs.split(",")]
