@@ -74,8 +74,11 @@ class Course:
             AllPairs(self.network)
             return 1
 
+        return Race(f"all pairs from scratch, {self.size}", "", {OURS: ours, **self.from_scratch()})
+
+    def from_scratch(self) -> dict[str, Callable[[], int]]:
+        """Return the peers' ways to all pairs, which is also how they follow a change."""
         ways = {
-            OURS: ours,
             "scipy": self.peers.scipy_all,
             "rustworkx": self.peers.rustworkx_all,
             "igraph": self.peers.igraph_all,
@@ -83,7 +86,7 @@ class Course:
         }
         if self.network.structure.routers > 2000:
             del ways["rustworkx"], ways["igraph"]  # tens of seconds and gigabytes of objects
-        return Race(f"all pairs from scratch, {self.size}", "", ways)
+        return ways
 
     def networkx_all(self) -> int:
         """A few sources stand for all: networkx takes each on its own."""
@@ -133,7 +136,7 @@ class Course:
                 pairs.move_to(self.network)
             return 2 * len(links)
 
-        ways = {OURS: ours, "scipy": self.peers.scipy_all, "networkx": self.networkx_all}
+        ways = {OURS: ours, **self.from_scratch()}
         return Race(f"one link toggled, all pairs current, {self.size}", "each", ways)
 
     def survey(self, kind: str, failures: list[Failure], sample: list[str]) -> Race:
