@@ -7,14 +7,15 @@ from itertools import pairwise
 
 import networkx as nx
 import numpy as np
-from hypothesis import HealthCheck, settings
+import pytest
+from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 from hypothesis.stateful import RuleBasedStateMachine, initialize, invariant, rule
 from scipy.sparse import coo_array
 from scipy.sparse.csgraph import dijkstra
 
 from netsketch.formats import native
-from netsketch.model import Edit, LinkState, Plan, Router, Trial, edits
+from netsketch.model import Edit, Link, LinkState, Plan, Router, Trial, edits
 from netsketch.routing import BLOCKED, AllPairs, Network, Routes, Structure, compile_plan
 from tests import reference, strategies
 from tests.examples import examples
@@ -173,6 +174,38 @@ def test_from_any_network_to_any_other() -> None:
             update = pairs.move_to(random_network(rng, structure, pairs.network))
             assert (pairs.distances == AllPairs(pairs.network).distances).all()
             assert update.changed_pairs == int((pairs.distances != before).sum())
+
+
+@examples(80)
+@given(before=strategies.plans(), after=strategies.plans())
+def test_from_any_plan_to_any_other(before: Plan, after: Plan) -> None:
+    """Ids that name something else afterwards: links with other ends, a router that was a
+    segment."""
+    pairs = AllPairs(compile_plan(before))
+    pairs.move_to(compile_plan(after))
+    assert (pairs.distances == AllPairs(compile_plan(after)).distances).all()
+
+
+def test_a_link_redrawn_between_other_ends_under_its_id() -> None:
+    plan = plan_of("a-b 1, b-c 1, c-d 1, d-a 9")
+    pairs = AllPairs(compile_plan(plan))
+    plan.apply(edits.remove(plan, (), ["a-b"]))
+    plan.apply(edits.add(plan, Link(id="a-b", source="a", target="d", cost=2, cost_back=2)))
+    pairs.move_to(compile_plan(plan))
+    vertex = pairs.network.structure.vertex_of
+    assert [pairs.distances[vertex["a"], vertex[t]] for t in "bcd"] == [4, 3, 2]
+
+
+@pytest.mark.parametrize("kinds", [("", "hub"), ("hub", "")])
+def test_a_router_redrawn_as_a_segment_under_its_id(kinds: tuple[str, str]) -> None:
+    """Leaving a router costs, leaving a segment does not."""
+    first, second = (compile_plan(plan_of("a-hub 3, b-hub 4, c-hub 5", kind)) for kind in kinds)
+    pairs = AllPairs(first)
+    pairs.move_to(second)
+    vertex = second.structure.vertex_of
+    across = 3 if kinds[1] else 7
+    assert pairs.distances[vertex["a"], vertex["b"]] == across
+    assert (pairs.distances == AllPairs(second).distances).all()
 
 
 def test_a_parallel_link_goes_with_the_way_to_its_tail() -> None:
