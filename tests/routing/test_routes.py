@@ -99,6 +99,30 @@ def test_cut_off_has_no_answer() -> None:
     assert (routes.next_hops(c), routes.shares(c), routes.path_count(c)) == ((), [], 0)
 
 
+def test_hops_are_the_least_though_a_longer_way_is_found_first() -> None:
+    """v is 2 hops away over u2, which also has a way of 3 hops, and 3 hops over u1; all
+    cost 4."""
+    plan = plan_of("a-u2 3, a-p 1, p-q 1, q-u2 1, a-r 1, r-u1 2, u1-v 1, u2-v 1")
+    network = compile_plan(plan)
+    vertex = network.structure.vertex_of
+    routes = Routes(network, vertex["a"])
+    assert (routes.cost(vertex["v"]), routes.path_count(vertex["v"])) == (4, 3)
+    assert [routes.hops(vertex[v]) for v in ("u1", "u2", "v")] == [2, 1, 2]
+
+
+@pytest.mark.parametrize("unknown", ["a-b", "b-d", "a-c", "c-d"])
+def test_one_unknown_delay_among_equal_cost_paths_hides_the_rest(unknown: str) -> None:
+    plan = plan_of("a-b 1, a-c 1, b-d 1, c-d 1, d-e 1")
+    known = [edits.replace(k, delay_ms=2.5) for k in plan.links if k.id != unknown]
+    plan.apply(edits.change(plan, known, "set delays"))
+    network = compile_plan(plan)
+    vertex = network.structure.vertex_of
+    routes = Routes(network, vertex["a"])
+    assert [routes.delay_ms(vertex[v]) for v in "de"] == [None, None]
+    other = "c" if unknown in ("a-b", "b-d") else "b"
+    assert routes.delay_ms(vertex[other]) == (2.5, 2.5)
+
+
 def test_path_counts_saturate() -> None:
     """70 diamonds in a row hold 2**70 equal-cost paths: more than is counted exactly."""
     parts = [f"n{i}-a{i} 1, n{i}-b{i} 1, a{i}-n{i + 1} 1, b{i}-n{i + 1} 1" for i in range(70)]
