@@ -87,6 +87,10 @@ def test_a_link_named_twice_fails_once() -> None:
     plan = plan_of("a-b 1, a-b2 1, b2-b 1")
     twice = Failure(("a-b", "a-b"), links=("a-b", "a-b"), nodes=("b",))
     assert_as_defined(plan, survey(compile_plan(plan), "links", [twice]))
+    # Taken away twice, b-d would leave d without its other equal-cost way, and x with a move.
+    plan = plan_of("x-a 1, a-b 1, a-c 1, b-d 1, c-d 1")
+    twice = Failure(("b-d", "b-d"), links=("b-d", "b-d"))
+    assert_as_defined(plan, survey(compile_plan(plan), "links", [twice]))
 
 
 def test_progress_ends_at_one_and_no_failures_is_an_answer() -> None:
