@@ -20,7 +20,7 @@ from netsketch.model import Plan, TrialChange, edits
 from netsketch.window.chips import chip_text
 from netsketch.window.literal import as_tip
 
-MOST_CHIPS = 60
+MOST_CHIPS = 24
 _LONGEST = 44
 
 
