@@ -53,8 +53,8 @@ def handlers(window: MainWindow) -> dict[str, Callable[[], object]]:
         "outward": partial(desk.show_kind, "outward"),
         "inward": partial(desk.show_kind, "inward"),
         "effect": partial(desk.show_kind, "effect"),
-        "keys": lambda: window.ask.tell("Keys", actions.keys_text()),
-        "cautions": lambda: window.ask.tell("Cautions", cautions.as_html()),
+        "keys": lambda: window.ask.read("Keys", actions.keys_text()),
+        "cautions": lambda: window.ask.read("Cautions", cautions.as_html()),
     }
     found.update({f"look_{name}": partial(window.set_look, name) for name in LOOKS})
     found.update({f"tool_{name}": partial(sheet.set_tool, name) for name in TOOLS})

@@ -14,6 +14,7 @@ from PySide6.QtWidgets import (
     QMainWindow,
     QMenu,
     QToolBar,
+    QToolButton,
     QVBoxLayout,
     QWidget,
 )
@@ -33,7 +34,7 @@ from netsketch.window.relay import Relay
 from netsketch.window.settings import Settings
 from netsketch.window.survey_panel import SurveyPanel
 from netsketch.window.surveys import Surveys
-from netsketch.window.theme import apply_look, look_named
+from netsketch.window.theme import apply_look, look_named, more_icon
 from netsketch.window.trial_strip import TrialStrip
 
 WRITING = ("record", "picture", "copy")
@@ -136,6 +137,10 @@ class MainWindow(QMainWindow):
             bar.addActions([self.actions_by_id[key] for key in group])
             bar.addSeparator()
         self.addToolBar(bar)
+        self._more = bar.findChildren(QToolButton, "qt_toolbar_ext_button")
+        for button in self._more:
+            button.setAccessibleName("More tools")
+            button.setToolTip("The tools that have no room here")
 
     def _connect(self) -> None:
         sheet, desk = self.sheet, self.desk
@@ -308,6 +313,8 @@ class MainWindow(QMainWindow):
         look = look_named(name)
         apply_look(look)
         self.sheet.set_look(look)
+        for button in self._more:
+            button.setIcon(more_icon(look))
         self.actions_by_id[f"look_{name}"].setChecked(True)
 
     def _follow_system(self) -> None:

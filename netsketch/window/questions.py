@@ -5,13 +5,23 @@ from __future__ import annotations
 from pathlib import Path
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QFileDialog, QInputDialog, QMessageBox, QWidget
+from PySide6.QtWidgets import (
+    QDialog,
+    QDialogButtonBox,
+    QFileDialog,
+    QInputDialog,
+    QMessageBox,
+    QTextBrowser,
+    QVBoxLayout,
+    QWidget,
+)
 
 from netsketch.window.literal import as_tip
 
 SAVE, THROW_AWAY, GO_BACK = "save", "throw away", "go back"
 
 _PLAIN = Qt.TextFormat.PlainText
+_PAGE_WIDTH, _PAGE_HEIGHT = 640, 720
 _PLANS = "Plans and graphs (*.json *.graphml *.xml *.gml);;All files (*)"
 _SAVES = "netsketch plan (*.netsketch.json);;GraphML (*.graphml);;GML (*.gml)"
 _RECORDS = "HTML (*.html);;PDF (*.pdf);;Markdown (*.md)"
@@ -77,8 +87,27 @@ class Questions:
         return text if sure else None
 
     def tell(self, title: str, text: str) -> None:
-        """Say something that must not be missed; ``text`` may be HTML of our own."""
+        """Say something short that must not be missed; ``text`` may be HTML of our own."""
         QMessageBox.information(self._window, title, text)
+
+    def read(self, title: str, text: str) -> None:
+        """Show a long text, HTML of our own, that scrolls where the screen is too small."""
+        page = QDialog(self._window)
+        page.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        page.setWindowTitle(title)
+        lines = QTextBrowser()
+        lines.setAccessibleName(title)
+        lines.setHtml(text)
+        close = QDialogButtonBox(QDialogButtonBox.StandardButton.Close)
+        close.rejected.connect(page.reject)
+        column = QVBoxLayout(page)
+        column.addWidget(lines)
+        column.addWidget(close)
+        room = self._window.screen().availableSize()
+        page.resize(
+            min(_PAGE_WIDTH, room.width() * 9 // 10), min(_PAGE_HEIGHT, room.height() * 4 // 5)
+        )
+        page.exec()
 
     def refuse(self, text: str) -> None:
         """Say why something was not done."""

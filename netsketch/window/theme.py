@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt
-from PySide6.QtGui import QColor, QPalette
+from PySide6.QtCore import QPointF, Qt
+from PySide6.QtGui import QColor, QIcon, QPainter, QPalette, QPen, QPixmap
 from PySide6.QtWidgets import QApplication
 
 from netsketch.sheet.look import DARK, LIGHT, Look
@@ -27,6 +27,20 @@ def apply_look(look: Look) -> None:
     app.setStyle("Fusion")
     app.setPalette(_palette(look))
     app.setStyleSheet(_style(look))
+
+
+def more_icon(look: Look) -> QIcon:
+    """Return the mark for tools that have no room; the style's own is black on any ground."""
+    picture = QPixmap(24, 32)
+    picture.setDevicePixelRatio(2)
+    picture.fill(Qt.GlobalColor.transparent)
+    with QPainter(picture) as painter:
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        painter.setPen(QPen(QColor(look.ink), 1.5))
+        for left in (2.0, 6.5):
+            tip = QPointF(left + 3.5, 8)
+            painter.drawPolyline([QPointF(left, 4.5), tip, QPointF(left, 11.5)])
+    return QIcon(picture)
 
 
 def _palette(look: Look) -> QPalette:
@@ -62,6 +76,7 @@ def _style(look: Look) -> str:
         QToolBar#Trial {{ border: none; border-top: 1px solid {look.hairline}; }}
         QToolBar {{ border: none; border-bottom: 1px solid {look.hairline}; spacing: 4px; }}
         QToolButton {{ padding: 4px 8px; border: 1px solid transparent; border-radius: 4px; }}
+        QToolButton#qt_toolbar_ext_button {{ padding: 0; }}
         QToolButton:hover {{ border-color: {look.hairline}; }}
         QToolButton:checked {{ background: {look.ink}; color: {look.paper}; }}
         QToolButton:focus {{ border-color: {look.ink}; }}

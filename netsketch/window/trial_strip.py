@@ -35,6 +35,7 @@ class TrialStrip(QFrame):
         self.setProperty("role", "strip")
         self.setAccessibleName("Trial")
         self._plan: Plan | None = None
+        self._removers: list[QToolButton] = []
         self._chips = QWidget()
         self._row = QHBoxLayout(self._chips)
         self._row.setContentsMargins(0, 0, 0, 0)
@@ -73,6 +74,8 @@ class TrialStrip(QFrame):
     def show_trial(self, plan: Plan) -> None:
         """Show the trial of ``plan``."""
         self._plan = plan
+        place = self._place_of_keys()
+        self._removers.clear()
         while self._row.count():
             item = self._row.takeAt(0)
             widget = item.widget() if item is not None else None
@@ -86,11 +89,26 @@ class TrialStrip(QFrame):
             self._row.addWidget(empty)
         for change in changes[:MOST_CHIPS]:
             self._row.addWidget(self._chip(plan, change))
+        if place is not None:
+            self._give_keys(place)
         if len(changes) > MOST_CHIPS:
             self._row.addWidget(QLabel(f"and {len(changes) - MOST_CHIPS} more"))
         self._row.addStretch(1)
         for button in (self.ledger_button, self.adopt_button, self.discard_button):
             button.setEnabled(bool(changes))
+
+    def _place_of_keys(self) -> int | None:
+        """Return which chip has the keyboard, if one has."""
+        for place, remove in enumerate(self._removers):
+            if remove.hasFocus():
+                return place
+        return None
+
+    def _give_keys(self, place: int) -> None:
+        """Give the keyboard to the chip that is now at ``place``, or to the last one."""
+        if self._removers:
+            remove = self._removers[min(place, len(self._removers) - 1)]
+            remove.setFocus(Qt.FocusReason.OtherFocusReason)
 
     def _chip(self, plan: Plan, change: TrialChange) -> QFrame:
         text = chip_text(plan, change)
@@ -109,6 +127,7 @@ class TrialStrip(QFrame):
         remove.setToolTip("Take this change out of the trial")
         remove.setAccessibleName(f"Take out: {text[:200]}")
         remove.clicked.connect(partial(self._drop, change))
+        self._removers.append(remove)
         row.addWidget(label)
         row.addWidget(remove)
         return chip

@@ -43,6 +43,8 @@ class Answering:
     def tell(self, title: str, text: str) -> None:
         self.said.append(text)
 
+    read = tell
+
     def refuse(self, text: str) -> None:
         self.said.append(text)
 
