@@ -44,7 +44,7 @@ class RouterPage(Page):
         self.down = QCheckBox("Down")
         self.down.setToolTip("Down in the trial (D)")
         self.drained = QCheckBox("Drained")
-        self.drained.setToolTip("In the trial: reached, but never passed through (R)")
+        self.drained.setToolTip("In the trial: carries nothing that is not its own (R)")
         self.table_model = RouteTable(self)
         self.table = _table(self.table_model)
         self.filter = line("Filter the forwarding table", "Show rows that hold this text")
