@@ -4,7 +4,7 @@ COMPUTES = (
     "Shortest paths of one link-state routing domain, with every equal-cost next hop, from the "
     "costs, states and links of the plan.",
     "A link carries traffic only when it and both its ends are up and both directions exist.",
-    "A drained router and the networks only it serves are reached; nobody else is reached through it.",
+    "A drained router and the networks only it serves are reached; nothing else is through it.",
 )
 
 DOES_NOT = (
